@@ -1,0 +1,82 @@
+import { useQueryClient, type InfiniteData, type QueryClient } from '@tanstack/react-query';
+import { useEffect } from 'react';
+import { LabEvent } from '../../shared/events.ts';
+import { captureKeys, captureOptions, type CapturePage } from './captures.ts';
+import { campaignKeys } from './campaigns.ts';
+import { safeJson } from './http.ts';
+
+type Listener = (event: LabEvent) => void;
+const listeners = new Set<Listener>();
+
+/** Calls `listener` for each event of the labs until the returned function is called. */
+export function listenToEvents(listener: Listener): () => void {
+  listeners.add(listener);
+  return () => listeners.delete(listener);
+}
+
+function patchRow(client: QueryClient, event: Extract<LabEvent, { kind: 'captureChanged' }>): void {
+  client.setQueriesData<InfiniteData<CapturePage, string>>({ queryKey: captureKeys.lists }, (data) =>
+    data === undefined
+      ? data
+      : {
+          ...data,
+          pages: data.pages.map((page) => ({
+            ...page,
+            items: page.items.map((item) =>
+              item.id === event.captureId ? { ...item, state: event.state, progress: event.progress } : item,
+            ),
+          })),
+        },
+  );
+}
+
+let refetchTimer: ReturnType<typeof setTimeout> | undefined;
+
+/** Asks for the lists again, at most a few times a second however many events come. */
+function refreshLists(client: QueryClient): void {
+  refetchTimer ??= setTimeout(() => {
+    refetchTimer = undefined;
+    void client.invalidateQueries({ queryKey: captureKeys.lists });
+    void client.invalidateQueries({ queryKey: campaignKeys.all });
+  }, 150);
+}
+
+function apply(client: QueryClient, event: LabEvent): void {
+  if (event.kind === 'captureChanged') patchRow(client, event);
+  const settled = event.kind === 'estimateMade' || (event.state !== 'reading' && event.progress === null);
+  if (settled) refreshLists(client);
+  if (settled || event.kind === 'captureChanged') {
+    void client.invalidateQueries({ queryKey: captureOptions(event.captureId).queryKey });
+  }
+  for (const listener of listeners) listener(event);
+}
+
+/** Follows `GET /api/events` while mounted: patches and refreshes what is on screen. Mount once. */
+export function useLabEvents(): void {
+  const client = useQueryClient();
+  useEffect(() => {
+    let source: EventSource;
+    let broken = false;
+    let retry: ReturnType<typeof setTimeout> | undefined;
+    const open = () => {
+      source = new EventSource('/api/events');
+      source.onopen = () => {
+        if (broken) void client.invalidateQueries({ queryKey: captureKeys.all });
+        broken = false;
+      };
+      source.onmessage = ({ data }) => {
+        const event = LabEvent.safeParse(safeJson(String(data)));
+        if (event.success) apply(client, event.data);
+      };
+      source.onerror = () => {
+        broken = true;
+        if (source.readyState === EventSource.CLOSED) retry = setTimeout(open, 5_000);
+      };
+    };
+    open();
+    return () => {
+      clearTimeout(retry);
+      source.close();
+    };
+  }, [client]);
+}

@@ -1,0 +1,3 @@
+import { applyTheme, storedTheme } from './theme.ts';
+
+applyTheme(storedTheme());

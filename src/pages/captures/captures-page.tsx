@@ -1,0 +1,3 @@
+export function CapturesPage() {
+  return <h1>Captures</h1>;
+}

@@ -1,0 +1,33 @@
+import { isRouteErrorResponse, useRouteError } from 'react-router-dom';
+import { Button } from '../../components/ui/button.tsx';
+
+/** What stands in for a screen that failed. */
+export function ErrorPage() {
+  const error = useRouteError();
+  const detail = isRouteErrorResponse(error)
+    ? error.statusText
+    : error instanceof Error
+      ? error.message
+      : String(error);
+  const stale = /dynamically imported module|Importing a module/i.test(detail);
+  return (
+    <main className="max-w-[640px] p-8">
+      <title>Stopped · Perhertz</title>
+      <h1 className="text-title font-semibold">This screen stopped</h1>
+      <p className="mt-3 text-verdict">
+        {stale
+          ? 'A part of the page couldn’t be loaded: the connection dropped, or the server has a newer version.'
+          : 'Something failed in the page itself. What the server holds is untouched.'}
+      </p>
+      <p className="mt-2 font-mono text-caption break-words text-ink3">{detail}</p>
+      <div className="mt-4 flex gap-2.5">
+        <Button kind="primary" onClick={() => location.reload()}>
+          Load it again
+        </Button>
+        <Button kind="quiet" onClick={() => location.assign('/captures')}>
+          Go to the captures
+        </Button>
+      </div>
+    </main>
+  );
+}

@@ -1,0 +1,3 @@
+export function MethodPage() {
+  return <h1>Method</h1>;
+}

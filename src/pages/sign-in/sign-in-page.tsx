@@ -1,0 +1,3 @@
+export function SignInPage() {
+  return <h1>Sign in</h1>;
+}
