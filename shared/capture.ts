@@ -36,8 +36,12 @@ export const TraceSummary = z.object({
 });
 export type TraceSummary = z.infer<typeof TraceSummary>;
 
-/** Min and max level in equal parts of the span, for the table. */
-export const Sparkline = z.object({ min: z.array(z.number()), max: z.array(z.number()), spurs: z.array(z.number()) });
+/** Min and max level in equal parts of the span, and where spurs stand on it (0 to 1), for the table. */
+export const Sparkline = z.object({
+  min: z.array(z.number()),
+  max: z.array(z.number()),
+  spurs: z.array(z.number()),
+});
 export type Sparkline = z.infer<typeof Sparkline>;
 
 export const Person = z.object({ id: z.uuid(), name: z.string() });
@@ -80,7 +84,14 @@ export const Understanding = z.object({
   firstDataLine: z.number().int(),
   lastDataLine: z.number().int(),
   lines: z.number().int(),
-  columns: z.array(z.object({ index: z.number().int(), name: z.string(), role: z.enum(['frequency', 'level', 'ignored']), unit: z.string() })),
+  columns: z.array(
+    z.object({
+      index: z.number().int(),
+      name: z.string(),
+      role: z.enum(['frequency', 'level', 'ignored']),
+      unit: z.string(),
+    }),
+  ),
   axis: z.enum(['column', 'startStop', 'rows']),
   sentence: z.string(),
 });
@@ -140,7 +151,12 @@ export type CaptureChanges = z.infer<typeof CaptureChanges>;
 
 /** Points for the plot: `exact` has one level per frequency; `buckets` has min and max per equal part of the span. */
 export const Points = z.discriminatedUnion('form', [
-  z.object({ form: z.literal('exact'), unit: LevelUnit, hz: z.array(z.number()), level: z.array(z.number()) }),
+  z.object({
+    form: z.literal('exact'),
+    unit: LevelUnit,
+    hz: z.array(z.number()),
+    level: z.array(z.number()),
+  }),
   z.object({
     form: z.literal('buckets'),
     unit: LevelUnit,
@@ -158,3 +174,17 @@ export const Campaign = z.object({
   captures: z.number().int(),
 });
 export type Campaign = z.infer<typeof Campaign>;
+
+export const CampaignRequest = z.strictObject({
+  name: z.string().trim().min(1).max(200),
+  limitDbmPerHz: z.number().min(-300).max(100).nullable().optional(),
+});
+export type CampaignRequest = z.infer<typeof CampaignRequest>;
+
+/** Query of the points: a part of the span, and at most how many points or buckets. */
+export const PointsQuery = z.object({
+  fromHz: z.coerce.number().optional(),
+  toHz: z.coerce.number().optional(),
+  buckets: z.coerce.number().int().min(1).max(200_000).default(4000),
+});
+export type PointsQuery = z.infer<typeof PointsQuery>;

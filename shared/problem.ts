@@ -11,6 +11,6 @@ export const Problem = z.object({
 });
 export type Problem = z.infer<typeof Problem>;
 
-/** One page of a list; `nextCursor` is null on the last page. */
+/** One page of a list; `nextCursor` is null on the last page; `total` counts all matches and stands on the first page. */
 export const page = <T extends z.ZodType>(item: T) =>
-  z.object({ items: z.array(item), nextCursor: z.string().nullable() });
+  z.object({ items: z.array(item), nextCursor: z.string().nullable(), total: z.number().int().optional() });

@@ -20,6 +20,17 @@ export type TokenRequest = z.infer<typeof TokenRequest>;
 export const NewToken = z.object({ id: z.uuid(), name: z.string(), token: z.string() });
 export type NewToken = z.infer<typeof NewToken>;
 
+/** A personal token as its list shows it. */
+export const TokenSummary = z.object({
+  id: z.uuid(),
+  name: z.string(),
+  labId: z.uuid(),
+  createdAt: z.iso.datetime(),
+  lastUsedAt: z.iso.datetime().nullable(),
+  expiresAt: z.iso.datetime().nullable(),
+});
+export type TokenSummary = z.infer<typeof TokenSummary>;
+
 export const Health = z.object({
   status: z.enum(['ok', 'degraded']),
   database: z.boolean(),
