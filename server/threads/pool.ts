@@ -1,0 +1,1 @@
+export type ThreadPool = Record<string, never>;
