@@ -10,7 +10,8 @@ export function simulateCapture(spec: CaptureSpec): SimulatedCapture {
   const band = bandOf(spec);
   const random = new Random(spec.seed);
   const { mode, points, sweeps, averagingScale } = spec;
-  const sweep = mode.kind === 'swept' ? sweptSweeps(spec, mode, band, random) : fftSweeps(spec, mode, band, random);
+  const sweep =
+    mode.kind === 'swept' ? sweptSweeps(spec, mode, band, random) : fftSweeps(spec, mode, band, random);
   const sums = new Float64Array(points);
   const highest = new Float64Array(points);
   const lowest = new Float64Array(points).fill(Infinity);

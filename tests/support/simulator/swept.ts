@@ -16,7 +16,12 @@ const BLOCK = 1 << 18;
  * the filter as one stationary process in time; signals pass as phasors with the filter's response at
  * their offset; then video filter and detector. Sweeps are independent of each other.
  */
-export function sweptSweeps(spec: CaptureSpec, mode: SweptMode, band: Band, random: Random): () => Float64Array {
+export function sweptSweeps(
+  spec: CaptureSpec,
+  mode: SweptMode,
+  band: Band,
+  random: Random,
+): () => Float64Array {
   const { rbwHz, detector, points } = spec;
   const detectorScale = spec.detectorScale ?? 'power';
   const videoScale = spec.videoScale ?? spec.averagingScale;
