@@ -4,9 +4,12 @@ import helmet from 'helmet';
 import { pinoHttp } from 'pino-http';
 import { v7 as uuidv7 } from 'uuid';
 import { campaignRoutes } from './routes/campaigns.ts';
+import { captureDataRoutes } from './routes/capture-data.ts';
 import { captureRoutes } from './routes/captures.ts';
 import { clientFiles } from './routes/client-files.ts';
 import { problemDocuments, unknownPath } from './routes/errors.ts';
+import { estimateRoutes } from './routes/estimates.ts';
+import { eventRoutes } from './routes/events.ts';
 import { healthRoutes } from './routes/health.ts';
 import { identify, sameOriginOnly, sessions } from './routes/identity.ts';
 import { sessionRoutes } from './routes/session.ts';
@@ -15,7 +18,15 @@ import type { Context } from './services/context.ts';
 
 /** Every resource's routes; all but health ask who is there. */
 export function resourceRoutes(context: Context): Router[] {
-  return [sessionRoutes(context), tokenRoutes(context), campaignRoutes(context), captureRoutes(context)];
+  return [
+    sessionRoutes(context),
+    tokenRoutes(context),
+    campaignRoutes(context),
+    captureRoutes(context),
+    captureDataRoutes(context),
+    estimateRoutes(context),
+    eventRoutes(context),
+  ];
 }
 
 function securityHeaders(secure: boolean) {

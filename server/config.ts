@@ -3,7 +3,10 @@ import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { z } from 'zod';
 
-const flag = z.enum(['0', '1']).default('0').transform((text) => text === '1');
+const flag = z
+  .enum(['0', '1'])
+  .default('0')
+  .transform((text) => text === '1');
 
 const Environment = z.object({
   NODE_ENV: z.string().default('development'),
@@ -14,7 +17,11 @@ const Environment = z.object({
   LOG_LEVEL: z.enum(['fatal', 'error', 'warn', 'info', 'debug', 'trace', 'silent']).default('info'),
   PERHERTZ_MIGRATE: flag,
   PERHERTZ_TRUST_PROXY: z.coerce.number().int().min(0).max(10).default(0),
-  PERHERTZ_MAX_UPLOAD_BYTES: z.coerce.number().int().positive().default(256 * 1024 * 1024),
+  PERHERTZ_MAX_UPLOAD_BYTES: z.coerce
+    .number()
+    .int()
+    .positive()
+    .default(256 * 1024 * 1024),
   PERHERTZ_UPLOAD_IDLE_MS: z.coerce.number().int().positive().default(30_000),
   PERHERTZ_CLIENT_DIR: z.string().optional(),
 });

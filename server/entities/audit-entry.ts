@@ -18,7 +18,10 @@ export const AuditEntryEntity = new EntitySchema<AuditEntry>({
   name: 'audit_entry',
   columns: {
     id: { type: 'uuid', primary: true, primaryKeyConstraintName: 'audit_entry_pk' },
-    labId: { type: 'uuid', foreignKey: { target: LabEntity, name: 'audit_entry_lab_fk', onDelete: 'RESTRICT' } },
+    labId: {
+      type: 'uuid',
+      foreignKey: { target: LabEntity, name: 'audit_entry_lab_fk', onDelete: 'RESTRICT' },
+    },
     personId: {
       type: 'uuid',
       nullable: true,

@@ -105,6 +105,10 @@ export const CaptureEntity = new EntitySchema<Capture>({
   indices: [
     { name: 'capture_lab_idx', columns: ['labId', 'id'] },
     { name: 'capture_campaign_idx', columns: ['campaignId'] },
-    { name: 'capture_unread_idx', columns: ['state'], where: "state = ANY (ARRAY['received'::text, 'reading'::text])" },
+    {
+      name: 'capture_unread_idx',
+      columns: ['state'],
+      where: "state = ANY (ARRAY['received'::text, 'reading'::text])",
+    },
   ],
 });

@@ -21,7 +21,10 @@ export const TokenEntity = new EntitySchema<Token>({
   columns: {
     id: { type: 'uuid', primary: true, primaryKeyConstraintName: 'token_pk' },
     labId: { type: 'uuid', foreignKey: { target: LabEntity, name: 'token_lab_fk', onDelete: 'CASCADE' } },
-    personId: { type: 'uuid', foreignKey: { target: PersonEntity, name: 'token_person_fk', onDelete: 'CASCADE' } },
+    personId: {
+      type: 'uuid',
+      foreignKey: { target: PersonEntity, name: 'token_person_fk', onDelete: 'CASCADE' },
+    },
     name: { type: 'text' },
     hash: { type: 'bytea', select: false },
     createdAt: { type: 'timestamptz', default: () => 'now()' },

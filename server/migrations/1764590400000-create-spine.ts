@@ -228,6 +228,8 @@ export class CreateSpine1764590400000 implements MigrationInterface {
       `DROP TABLE rate_limit, session, audit_entry, worker_heartbeat, estimate, trace, capture_chunk, capture,
          campaign, token, membership, person, lab`,
     );
-    await queryRunner.query('DROP FUNCTION refuse_change, refuse_direct_delete, keep_estimate, keep_original');
+    await queryRunner.query(
+      'DROP FUNCTION refuse_change, refuse_direct_delete, keep_estimate, keep_original',
+    );
   }
 }
