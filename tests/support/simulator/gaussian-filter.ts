@@ -2,7 +2,8 @@ import type { NoiseRequest, NoiseSource } from './resolution-filter.ts';
 
 /** Standard deviation in time of the impulse response, times RBW: half power at half an RBW from the centre. */
 const IMPULSE_DEVIATION = Math.sqrt(Math.log(2)) / Math.PI;
-const REACH = 5.5;
+/** Standard deviations of the impulse response that are kept on each side. */
+const REACH = 4.5;
 
 /** Amplitude response of a Gaussian filter, one half of the power at half an RBW. */
 export function gaussianAmplitude(offsetInRbw: number): number {

@@ -62,7 +62,7 @@ export interface CaptureSpec {
   ownNoiseDbmPerHz?: number;
   /** Step to which levels are rounded on export; 0: none. */
   roundingDb?: number;
-  /** Values per 1/RBW at least, in time; 12 by default. */
+  /** Values per 1/RBW at least, in time; by default 8 for values at instants and 12 where what lies between them counts. */
   oversampling?: number;
 }
 

@@ -27,8 +27,11 @@ export function sweptSweeps(
   const videoScale = spec.videoScale ?? spec.averagingScale;
   const videoInRbw = (spec.vbwHz ?? Infinity) / rbwHz;
   const filtered = videoInRbw < WIDE_VIDEO;
-  const oversampling = Math.max(spec.oversampling ?? 12, filtered ? Math.min(40, 6 * videoInRbw) : 0);
   const atInstants = detector === 'sample' && !filtered;
+  const oversampling = Math.max(
+    spec.oversampling ?? (atInstants ? 8 : 12),
+    filtered ? Math.min(40, 6 * videoInRbw) : 0,
+  );
   const smallest = detector === 'sample' ? 1 : VALUES_PER_DWELL;
   const perDwell = Math.max(smallest, Math.ceil(mode.dwellInRbw * oversampling));
   const stepInRbw = mode.dwellInRbw / perDwell;
