@@ -67,3 +67,16 @@ export function useChangeCapture(id: string) {
 
 /** Address of the very bytes that were uploaded. */
 export const captureFileUrl = (id: string) => `/api/captures/${id}/file`;
+
+/** Every capture under these filters, page after page. */
+export async function fetchAllCaptures(labId: string, filters: CaptureFilters): Promise<CaptureSummary[]> {
+  const items: CaptureSummary[] = [];
+  let cursor: string | undefined;
+  do {
+    const path = `/api/labs/${labId}/captures${queryString({ ...filters, cursor, limit: 200 })}`;
+    const answer: CapturePage = await request(CapturePage, path);
+    items.push(...answer.items);
+    cursor = answer.nextCursor ?? undefined;
+  } while (cursor !== undefined);
+  return items;
+}

@@ -6,7 +6,7 @@ import { Select } from '../ui/listbox.tsx';
 import { openKeySheet } from './key-sheet-state.ts';
 
 const THEMES: { value: Theme; label: string }[] = [
-  { value: 'system', label: 'as the system' },
+  { value: 'system', label: 'system' },
   { value: 'light', label: 'light' },
   { value: 'dark', label: 'dark' },
 ];

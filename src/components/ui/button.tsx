@@ -37,7 +37,11 @@ export function Button({
   return (
     <button type={type} className={clsx(buttonClass(kind), className)} {...rest}>
       {children}
-      {shortcut !== undefined && <Kbd>{shortcut}</Kbd>}
+      {shortcut !== undefined && (
+        <span className="contents max-phone:hidden">
+          <Kbd>{shortcut}</Kbd>
+        </span>
+      )}
     </button>
   );
 }

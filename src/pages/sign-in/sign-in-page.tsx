@@ -22,10 +22,10 @@ export function SignInPage() {
   const signedIn = client.getQueryData<Session | null>(sessionKey);
   if (signedIn) return <Navigate to={destination} replace />;
   return (
-    <div className="min-h-screen wide:grid wide:grid-cols-[minmax(0,1fr)_460px]">
+    <div className="flex min-h-screen flex-col wide:grid wide:grid-cols-[minmax(0,1fr)_460px]">
       <title>Sign in · Perhertz</title>
       <Pitch />
-      <main className="flex flex-col justify-center border-rule bg-sheet px-16 py-12 max-wide:border-t max-phone:px-5 wide:border-l">
+      <main className="flex flex-col justify-center max-wide:grow max-wide:justify-start border-rule bg-sheet px-16 py-12 max-wide:border-t max-phone:px-5 wide:border-l">
         <Form destination={destination} asked={params.has('to')} />
       </main>
     </div>
@@ -37,14 +37,16 @@ function Form({ destination, asked }: { destination: string; asked: boolean }) {
   const signIn = useSignIn();
   const [email, setEmail] = useState('');
   const [password, setPassword] = useState('');
-  const [emailError, setEmailError] = useState<string>();
+  const [errors, setErrors] = useState<{ email?: string; password?: string }>({});
 
   const submit = (event: FormEvent<HTMLFormElement>) => {
     event.preventDefault();
     const body = SignIn.safeParse({ email: email.trim(), password });
-    setEmailError(
-      body.success || password === '' ? undefined : 'Write the whole address, such as name@lab.example.',
-    );
+    const emailWrong = !SignIn.shape.email.safeParse(email.trim()).success;
+    setErrors({
+      email: emailWrong ? 'Write the whole address, such as name@lab.example.' : undefined,
+      password: password === '' ? 'Write the password too.' : undefined,
+    });
     if (!body.success) return;
     signIn.mutate(body.data, {
       onSuccess: () => void navigate(destination, { replace: true }),
@@ -57,7 +59,7 @@ function Form({ destination, asked }: { destination: string; asked: boolean }) {
     <form onSubmit={submit} noValidate className="mx-auto grid w-full max-w-[332px] gap-4">
       <h1 className="text-title font-semibold">Sign in</h1>
       {asked && <p className="-mt-2 text-table text-ink2">Then the page that you asked for opens.</p>}
-      <Field label="Email" layout="stack" error={emailError}>
+      <Field label="Email" layout="stack" error={errors.email}>
         {(ids) => (
           <input
             {...ids}
@@ -72,7 +74,7 @@ function Form({ destination, asked }: { destination: string; asked: boolean }) {
           />
         )}
       </Field>
-      <Field label="Password" layout="stack" error={signIn.error?.message}>
+      <Field label="Password" layout="stack" error={errors.password ?? signIn.error?.message}>
         {(ids) => (
           <input
             {...ids}
@@ -87,12 +89,7 @@ function Form({ destination, asked }: { destination: string; asked: boolean }) {
         )}
       </Field>
       <div className="mt-1">
-        <Button
-          kind="primary"
-          type="submit"
-          className="px-6"
-          disabled={signIn.isPending || email === '' || password === ''}
-        >
+        <Button kind="primary" type="submit" className="px-6" disabled={signIn.isPending}>
           {signIn.isPending ? 'Signing in…' : paused ? 'Try again' : 'Sign in'}
         </Button>
       </div>

@@ -1,9 +1,9 @@
 import { fixed } from '../../lib/format.ts';
 import type { SimulatedTrace } from './simulated-trace.ts';
 
-const WIDTH = 840;
+const WIDTH = 860;
 const HEIGHT = 470;
-const FRAME = { left: 44, right: 790, top: 22, bottom: 430 };
+const FRAME = { left: 44, right: 796, top: 22, bottom: 430 };
 const LEVELS = [-85, -90, -95, -100, -105, -110];
 const TOP_DBM = -84;
 const BOTTOM_DBM = -114;
