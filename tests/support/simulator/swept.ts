@@ -6,7 +6,7 @@ import type { CaptureSpec, SweptMode } from './spec.ts';
 import { VideoFilter } from './video-filter.ts';
 
 /** Below this many values per dwell, mean and extremes over the dwell would miss what happens between them. */
-const VALUES_PER_DWELL = 16;
+const VALUES_PER_DWELL = 8;
 /** A video filter this much wider than the RBW changes nothing that shows in a capture. */
 const WIDE_VIDEO = 30;
 const BLOCK = 1 << 18;
