@@ -145,7 +145,10 @@ describe('scatter of a point (method, sections 1 and 3)', () => {
     [5, 7.8593],
     [10, 15.379],
   ])('values in a dwell of %f/RBW behind an average detector', (dwellInRbw, values) => {
-    const seen = valuesBehindPoint({ detector: 'average', mode: dwell(dwellInRbw) }, dwellInRbw < 1 ? 90 : 24);
+    const seen = valuesBehindPoint(
+      { detector: 'average', mode: dwell(dwellInRbw) },
+      dwellInRbw < 1 ? 90 : 24,
+    );
     expectNear(seen, values, 0.03 * values);
   });
 
