@@ -1,5 +1,5 @@
 import { queryOptions, useMutation, useQuery, useQueryClient } from '@tanstack/react-query';
-import { Campaign } from '../../shared/capture.ts';
+import { Campaign, type CampaignRequest } from '../../shared/capture.ts';
 import { page } from '../../shared/problem.ts';
 import { request } from './http.ts';
 
@@ -22,7 +22,7 @@ export const useCampaigns = (labId: string) => useQuery(campaignsOptions(labId))
 export function useCreateCampaign(labId: string) {
   const client = useQueryClient();
   return useMutation({
-    mutationFn: (body: { name: string; limitDbmPerHz?: number | null }) =>
+    mutationFn: (body: CampaignRequest) =>
       request(Campaign, `/api/labs/${labId}/campaigns`, { method: 'POST', body }),
     onSuccess: () => client.invalidateQueries({ queryKey: campaignKeys.list(labId) }),
   });

@@ -30,6 +30,12 @@ function patchRow(client: QueryClient, event: Extract<LabEvent, { kind: 'capture
   );
 }
 
+function isListed(client: QueryClient, captureId: string): boolean {
+  return client
+    .getQueriesData<InfiniteData<CapturePage, string>>({ queryKey: captureKeys.lists })
+    .some(([, data]) => data?.pages.some(({ items }) => items.some(({ id }) => id === captureId)) ?? false);
+}
+
 let refetchTimer: ReturnType<typeof setTimeout> | undefined;
 
 /** Asks for the lists again, at most a few times a second however many events come. */
@@ -43,7 +49,10 @@ function refreshLists(client: QueryClient): void {
 
 function apply(client: QueryClient, event: LabEvent): void {
   if (event.kind === 'captureChanged') patchRow(client, event);
-  const settled = event.kind === 'estimateMade' || (event.state !== 'reading' && event.progress === null);
+  const settled =
+    event.kind === 'estimateMade' ||
+    (event.state !== 'reading' && event.progress === null) ||
+    !isListed(client, event.captureId);
   if (settled) refreshLists(client);
   if (settled || event.kind === 'captureChanged') {
     void client.invalidateQueries({ queryKey: captureOptions(event.captureId).queryKey });

@@ -70,7 +70,7 @@ export function CapturesPage() {
       />
       <div className="mt-3 flex flex-wrap items-center gap-x-6 gap-y-1 border-t border-b border-t-ink border-b-rule py-2">
         <p className="text-table text-ink2">
-          <strong className="text-body font-semibold text-ink">
+          <strong className="text-body font-semibold text-ink max-phone:hidden">
             Drop trace exports anywhere on this page.
           </strong>{' '}
           CSV or text, up to 256&nbsp;MiB each. Every file is kept byte for byte.

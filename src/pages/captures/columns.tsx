@@ -23,13 +23,13 @@ export const WIDTHS: Record<string, number | undefined> = {
   campaign: 116,
   centre: 78,
   rbw: 62,
-  averaging: 168,
+  averaging: 177,
   density: 72,
   uncertainty: 62,
   whisker: 140,
   spurs: 38,
-  state: 122,
-  by: 100,
+  state: 125,
+  by: 101,
 };
 
 export const RIGHT = new Set(['centre', 'rbw', 'density', 'uncertainty', 'spurs']);

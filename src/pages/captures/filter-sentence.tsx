@@ -2,6 +2,7 @@ import { useEffect, useState, type RefObject } from 'react';
 import type { Campaign, CaptureSort, Person } from '../../../shared/capture.ts';
 import { Kbd } from '../../components/ui/kbd.tsx';
 import { Select, type Option } from '../../components/ui/listbox.tsx';
+import { plural } from '../../lib/format.ts';
 import { SINCE, sinceWords, type Filtering, type Since } from './filters.ts';
 import { CAPTURE_STATES } from './state-words.ts';
 
@@ -123,8 +124,8 @@ export function FilterSentence({ filtering, campaigns, people, searchRef, total 
         />
       </div>
       <div className="ml-auto flex flex-wrap items-center gap-x-2 text-caption text-ink3 max-phone:ml-0">
-        <span aria-live="polite">
-          {total === null ? '' : total === 1 ? '1 capture,' : `${total.toLocaleString('en-US')} captures,`}
+        <span role="status" className="empty:hidden">
+          {total === null ? '' : `${plural(total, 'capture')},`}
         </span>
         <Select
           look="inline"

@@ -6,19 +6,11 @@ const TOP = 1;
 const BOTTOM = 25;
 const HEIGHT = 32;
 
-/** Where spurs stand, as shares of the span; the list gives them as shares or, read off larger values, in Hz. */
-function shares({ sparkline, centreHz, spanHz }: CaptureSummary): number[] {
-  const spurs = sparkline?.spurs ?? [];
-  if (spurs.every((value) => value >= 0 && value <= 1)) return spurs;
-  if (centreHz === null || spanHz === null || spanHz <= 0) return [];
-  return spurs.map((hz) => (hz - (centreHz - spanHz / 2)) / spanHz);
-}
-
 /** The trace in small: min to max per part, ticks under spurs. Decoration; the cells beside it say it in words. */
 export const Sparkline = memo(function Sparkline({ capture }: { capture: CaptureSummary }) {
   const { sparkline } = capture;
   if (sparkline === null || sparkline.min.length === 0) return <div className="h-8 w-[104px]" />;
-  const { min, max } = sparkline;
+  const { min, max, spurs } = sparkline;
   const low = Math.min(...min);
   const high = Math.max(...max);
   const range = Math.max(high - low, 3);
@@ -36,7 +28,7 @@ export const Sparkline = memo(function Sparkline({ capture }: { capture: Capture
       className="block"
     >
       <path d={path} fill="none" className="stroke-trace" strokeWidth=".7" strokeLinejoin="round" />
-      {shares(capture).map((share, i) => (
+      {spurs.map((share, i) => (
         <path key={i} d={`M${(share * WIDTH).toFixed(1)} 28v4`} className="stroke-spur" strokeWidth="1.3" />
       ))}
     </svg>

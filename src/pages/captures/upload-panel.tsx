@@ -18,18 +18,19 @@ interface Tracked {
 /** The lab's uploads with the captures that became of them, followed until each is read. */
 function useTracked(labId: string): Tracked[] {
   const uploads = useUploads().filter((upload) => upload.labId === labId);
+  const ids = [...new Set(uploads.flatMap(({ captureId }) => (captureId === null ? [] : [captureId])))];
   const captures = useQueries({
-    queries: uploads.map((upload) => ({
-      ...captureOptions(upload.captureId ?? ''),
-      enabled: upload.captureId !== null,
-      refetchInterval: ({ state }: { state: { data?: Capture } }) => {
-        const reads =
-          state.data === undefined || state.data.state === 'received' || state.data.state === 'reading';
-        return reads && upload.phase === 'stored' ? 2_000 : false;
-      },
+    queries: ids.map((id) => ({
+      ...captureOptions(id),
+      refetchInterval: ({ state: { data } }: { state: { data?: Capture } }) =>
+        data === undefined || data.state === 'received' || data.state === 'reading' ? 2_000 : false,
     })),
   });
-  return uploads.map((upload, index) => ({ upload, capture: captures[index].data }));
+  const byId = new Map(ids.map((id, index) => [id, captures[index].data]));
+  return uploads.map((upload) => ({
+    upload,
+    capture: upload.captureId === null ? undefined : byId.get(upload.captureId),
+  }));
 }
 
 const isReady = ({ upload, capture }: Tracked) => upload.phase === 'stored' && capture?.state === 'ready';
@@ -132,7 +133,7 @@ function UploadLine({ upload, capture }: Tracked) {
       <Progress label={`${upload.file.name}: ${look.progress}`} share={look.share} waiting={look.waiting} />
       <div className="flex items-baseline justify-between gap-3 text-caption text-ink2">
         <span className={look.bad === true ? 'text-bad' : ''}>{look.meaning}</span>
-        <span className="flex shrink-0 gap-3">{look.action}</span>
+        <span className="flex shrink-0 items-baseline gap-3">{look.action}</span>
       </div>
     </div>
   );
@@ -188,13 +189,10 @@ function lookOf(upload: Upload, capture: Capture | undefined): Look {
       };
     case 'duplicate':
       return {
-        progress: 'nothing to do',
+        progress: 'the same bytes',
         share: 1,
         tone: 'text-ink3',
-        meaning:
-          capture === undefined
-            ? 'The same bytes are already here.'
-            : `The same bytes are already here as ${capture.number}.`,
+        meaning: capture === undefined ? 'Already here.' : `Already here as ${capture.number}.`,
         action: (
           <>
             {upload.captureId !== null && (
