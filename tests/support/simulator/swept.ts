@@ -37,6 +37,8 @@ export function sweptSweeps(
   const stepInRbw = mode.dwellInRbw / perDwell;
   const stride = atInstants ? perDwell : 1;
   const perPoint = atInstants ? 1 : perDwell;
+  const carried = filtered ? videoScale : 'power';
+  const converts = carried !== detectorScale;
   const warmUp = filtered ? Math.ceil(1.6 / videoInRbw / stepInRbw) : 0;
   const pointsPerBlock = Math.max(1, Math.floor(BLOCK / perPoint));
   const re = new Float64Array(Math.max(warmUp, Math.min(points, pointsPerBlock) * perPoint));
@@ -59,21 +61,22 @@ export function sweptSweeps(
       for (let k = first, i = 0; k < first + count; k++) {
         const gain = Math.sqrt(band.noiseMwPerRbw[k]);
         let sum = 0;
-        let high = 0;
+        let high = -Infinity;
         let low = Infinity;
         let last = 0;
         for (let j = 0; j < perPoint; j++, i++) {
           const x = gain * re[i] + signals.re(k, j);
           const y = gain * im[i] + signals.im(k, j);
           const power = x * x + y * y;
-          last = video ? fromScale(videoScale, video.next(toScale(videoScale, power))) : power;
-          if (detector === 'average') sum += toScale(detectorScale, last);
-          else if (last > high) high = last;
+          last = video ? video.next(toScale(videoScale, power)) : power;
+          if (detector === 'average')
+            sum += converts ? toScale(detectorScale, fromScale(carried, last)) : last;
+          if (last > high) high = last;
           if (last < low) low = last;
         }
         if (detector === 'average') shown[k] = fromScale(detectorScale, sum / perPoint);
-        else if (detector === 'peak') shown[k] = high;
-        else shown[k] = detector === 'negativePeak' ? low : last;
+        else if (detector === 'peak') shown[k] = fromScale(carried, high);
+        else shown[k] = fromScale(carried, detector === 'negativePeak' ? low : last);
       }
     }
     return shown;
