@@ -33,7 +33,7 @@ async function startQueue(): Promise<Runner> {
     pollInterval: 1000,
     noHandleSignals: true,
     gracefulShutdownAbortTimeout: 4000,
-    crontab: '',
+    parsedCronItems: [],
     logger: new QueueLogger(
       () => (level, message) => log[level === 'warning' ? 'warn' : level]?.({}, message),
     ),

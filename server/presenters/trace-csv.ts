@@ -1,4 +1,4 @@
-import { fixed, plural } from '../../shared/quantities.ts';
+import { plural } from '../../shared/quantities.ts';
 import type { Capture } from '../entities/capture.ts';
 import type { Estimate } from '../entities/estimate.ts';
 
@@ -24,7 +24,7 @@ function headLines(capture: Capture, estimate: Estimate): string[] {
     `# Settings: ${settings.join('; ')}`,
     ...(body.density
       ? [
-          `# Density: ${fixed(body.density.dbmPerHz, 2)} dBm/Hz; ± ${fixed(body.density.expandedUncertaintyDb, 2)} dB (expanded; coverage 95 %)`,
+          `# Density: ${body.density.dbmPerHz.toFixed(2)} dBm/Hz; +/- ${body.density.expandedUncertaintyDb.toFixed(2)} dB (expanded; coverage 95 %)`,
         ]
       : []),
     `# Points used: ${body.input.usedPoints} of ${body.input.points}; ${plural(active.length, 'span')} left out`,

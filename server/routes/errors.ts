@@ -25,6 +25,10 @@ function expected(error: unknown): ProblemError | null {
 export function problemDocuments(log: Logger): ErrorRequestHandler {
   return (error, request, response, next) => {
     const requestId = String(request.id);
+    if (response.closed || response.destroyed) {
+      log.debug({ requestId }, 'the asker left before the answer was complete');
+      return;
+    }
     const problem = expected(error);
     if (!problem)
       log.error({ err: error, requestId, method: request.method, path: request.path }, 'unexpected error');

@@ -43,8 +43,8 @@ export function createThreadPool(databaseUrl: string): ThreadPool {
   const source = import.meta.url.endsWith('.ts');
   const threads = Math.max(2, availableParallelism() - 1);
   const pool = new Piscina({
-    filename: new URL(source ? './tasks.ts' : './tasks.js', import.meta.url).href,
-    execArgv: source ? ['--import', 'tsx'] : [],
+    filename: new URL(source ? './tasks-from-source.mjs' : './tasks.js', import.meta.url).href,
+    execArgv: [],
     minThreads: threads,
     maxThreads: threads,
     workerData: { databaseUrl },

@@ -1,0 +1,6 @@
+// Node 20's worker threads ignore `--import tsx`, so that a thread that runs the sources registers it itself.
+import { register } from 'tsx/esm/api';
+
+register();
+
+export const { estimate, points } = await import('./tasks.ts');
