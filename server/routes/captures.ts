@@ -7,6 +7,7 @@ import { requireCampaign } from '../services/campaigns.ts';
 import { changeCapture } from '../services/change-capture.ts';
 import type { Context } from '../services/context.ts';
 import { Gate } from '../services/gate.ts';
+import { applyLateFields } from '../services/late-fields.ts';
 import { listCaptures } from '../services/list-captures.ts';
 import { loadCapture, loadEstimates, loadTraces } from '../services/load-capture.ts';
 import { authorise } from '../services/problems.ts';
@@ -34,9 +35,10 @@ export function captureRoutes(context: Context): Router {
     const { labId } = request.params;
     const actor = actorOf(request);
     authorise(policy.uploadCaptures(actor, { labId }));
-    const { items } = await receiveUpload(context, gate, actor, labId, request, (campaignId) =>
+    const { items, late } = await receiveUpload(context, gate, actor, labId, request, (campaignId) =>
       requireCampaign(dataSource, labId, campaignId),
     );
+    await applyLateFields(context, actor, items, late);
     response.status(items.some(({ duplicate, id }) => id !== null && !duplicate) ? 201 : 200).json({ items });
   });
 
