@@ -54,8 +54,8 @@ class SignedIn {
   }
 
   async call(method: string, path: string, body?: string | FormData): Promise<unknown> {
-    const json = typeof body === 'string' ? { 'Content-Type': 'application/json' } : {};
-    const headers = { Cookie: this.#cookie, ...json };
+    const headers = new Headers({ Cookie: this.#cookie });
+    if (typeof body === 'string') headers.set('Content-Type', 'application/json');
     const response = await fetch(`${this.#baseUrl}${path}`, { method, headers, body });
     if (!response.ok)
       throw new Error(`${method} ${path} was answered ${response.status}: ${await response.text()}`);
