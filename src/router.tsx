@@ -1,7 +1,7 @@
 import { createBrowserRouter, Navigate } from 'react-router-dom';
 import { BlankPage } from './components/layout/blank-page.tsx';
 import { Shell } from './components/layout/shell.tsx';
-import { ErrorPage } from './pages/error/error-page.tsx';
+import { ErrorPage, ErrorPanel } from './pages/error/error-page.tsx';
 import { NotFoundPage } from './pages/not-found/not-found-page.tsx';
 
 /** The screens, each loaded when first asked for. */
@@ -19,7 +19,7 @@ export const router = createBrowserRouter([
     children: [
       { index: true, element: <Navigate to="/captures" replace /> },
       {
-        ErrorBoundary: ErrorPage,
+        ErrorBoundary: ErrorPanel,
         children: [
           {
             path: '/captures',
@@ -41,3 +41,6 @@ export const router = createBrowserRouter([
     ],
   },
 ]);
+
+/** The screen that is most likely next comes over while nobody waits. */
+setTimeout(() => void import('./pages/capture/capture-page.tsx').catch(() => undefined), 3_000);

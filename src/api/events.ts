@@ -1,9 +1,10 @@
 import { useQueryClient, type InfiniteData, type QueryClient } from '@tanstack/react-query';
 import { useEffect } from 'react';
 import { LabEvent } from '../../shared/events.ts';
+import { Session } from '../../shared/session.ts';
 import { captureKeys, captureOptions, type CapturePage } from './captures.ts';
 import { campaignKeys } from './campaigns.ts';
-import { safeJson } from './http.ts';
+import { NetworkFailure, request, safeJson } from './http.ts';
 
 type Listener = (event: LabEvent) => void;
 const listeners = new Set<Listener>();
@@ -66,6 +67,7 @@ export function useLabEvents(): void {
   useEffect(() => {
     let source: EventSource;
     let broken = false;
+    let stopped = false;
     let retry: ReturnType<typeof setTimeout> | undefined;
     const open = () => {
       source = new EventSource('/api/events');
@@ -79,11 +81,22 @@ export function useLabEvents(): void {
       };
       source.onerror = () => {
         broken = true;
-        if (source.readyState === EventSource.CLOSED) retry = setTimeout(open, 5_000);
+        if (source.readyState === EventSource.CLOSED) retry = setTimeout(() => void reopen(), 5_000);
       };
+    };
+    /** A refused stream may mean that the session has run out: asking for it brings the sign-in dialog. */
+    const reopen = async () => {
+      try {
+        await request(Session, '/api/session');
+      } catch (error) {
+        if (!stopped && error instanceof NetworkFailure) retry = setTimeout(() => void reopen(), 5_000);
+        return;
+      }
+      if (!stopped) open();
     };
     open();
     return () => {
+      stopped = true;
       clearTimeout(retry);
       source.close();
     };

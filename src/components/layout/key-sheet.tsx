@@ -1,5 +1,6 @@
 import { setKeysEnabled, useKeys, useKeysEnabled } from '../../lib/keys.ts';
-import { Dialog } from '../ui/dialog.tsx';
+import { Button } from '../ui/button.tsx';
+import { Dialog, DialogActions } from '../ui/dialog.tsx';
 import { Kbd } from '../ui/kbd.tsx';
 import { closeKeySheet, openKeySheet, useKeySheetState, type KeyRow } from './key-sheet-state.ts';
 
@@ -26,6 +27,9 @@ export function KeySheet() {
         />
         Single-letter keys act (never inside a field)
       </label>
+      <DialogActions>
+        <Button onClick={closeKeySheet}>Close</Button>
+      </DialogActions>
     </Dialog>
   );
 }

@@ -1,5 +1,6 @@
 import { useRef, useState, type ReactNode } from 'react';
 import { useDropzone } from 'react-dropzone';
+import type { Campaign } from '../../../shared/capture.ts';
 import { useCampaigns } from '../../api/campaigns.ts';
 import { useHealth } from '../../api/session.ts';
 import { addUploads } from '../../api/uploads.ts';
@@ -7,12 +8,13 @@ import { useKeyList } from '../../components/layout/key-sheet-state.ts';
 import { PageHead } from '../../components/layout/page-head.tsx';
 import { Button, LinkButton } from '../../components/ui/button.tsx';
 import { Message } from '../../components/ui/message.tsx';
-import { EmptyState, ErrorState, LoadingRows } from '../../components/ui/states.tsx';
+import { EmptyState, ErrorState } from '../../components/ui/states.tsx';
 import { countWords, plural } from '../../lib/format.ts';
 import { useKeysEnabled } from '../../lib/keys.ts';
 import { useLab } from '../../lib/use-lab.ts';
 import { CapturesTable } from './captures-table.tsx';
 import { exportWholeList } from './export-list.ts';
+import { NewCampaignDialog } from './new-campaign.tsx';
 import { FilterSentence } from './filter-sentence.tsx';
 import { useFiltering, type Filtering } from './filters.ts';
 import { SelectionBar, useMovedNote } from './selection-bar.tsx';
@@ -36,6 +38,8 @@ export function CapturesPage() {
     onDrop: (files: File[]) => addUploads(files, { labId: lab.id, campaignId: target.campaignId }),
   });
   const keys = useRowKeys(rows.items, { search: () => search.current?.focus(), choose: drop.open });
+  const [onCampaign, setOnCampaign] = useState<((campaign: Campaign) => void) | null>(null);
+  const askForCampaign = (then: (campaign: Campaign) => void) => setOnCampaign(() => then);
   useKeyList('Captures', CAPTURES_KEYS);
   const selected = rows.captures.filter(({ id }) => keys.selected.has(id));
   const labIsEmpty = rows.list.isSuccess && rows.captures.length === 0 && !filtering.filtered;
@@ -62,7 +66,7 @@ export function CapturesPage() {
               </span>
             )}
             <ExportButton labId={lab.id} filtering={filtering} disabled={rows.captures.length === 0} />
-            <Button kind="primary" shortcut="n" onClick={drop.open}>
+            <Button kind={labIsEmpty ? 'secondary' : 'primary'} shortcut="n" onClick={drop.open}>
               Choose files
             </Button>
           </>
@@ -75,7 +79,11 @@ export function CapturesPage() {
           </strong>{' '}
           CSV or text, up to 256&nbsp;MiB each. Every file is kept byte for byte.
         </p>
-        <UploadTarget target={target} campaigns={campaigns.data ?? []} />
+        <UploadTarget
+          target={target}
+          campaigns={campaigns.data ?? []}
+          onNew={() => askForCampaign(({ id }) => target.choose(id))}
+        />
       </div>
       <WorkerNotice />
       {note}
@@ -105,6 +113,7 @@ export function CapturesPage() {
           ) : (
             <CapturesTable
               items={rows.items}
+              loading={rows.list.isPending}
               grouped={rows.grouped}
               axis={rows.axis}
               selected={keys.selected}
@@ -122,7 +131,14 @@ export function CapturesPage() {
           <Foot rows={rows} />
         </>
       )}
-      <SelectionBar selected={selected} campaigns={campaigns.data ?? []} onClear={keys.clear} moves={moves} />
+      <SelectionBar
+        selected={selected}
+        campaigns={campaigns.data ?? []}
+        onClear={keys.clear}
+        onNew={askForCampaign}
+        moves={moves}
+      />
+      <NewCampaignDialog labId={lab.id} onMade={onCampaign} onClose={() => setOnCampaign(null)} />
     </div>
   );
 }
@@ -135,15 +151,7 @@ function placeholderOf(
   campaign: string | undefined,
   choose: () => void,
 ): ReactNode {
-  if (rows.list.isPending)
-    return (
-      <LoadingRows
-        label="Loading the captures"
-        columns="120px 1fr 80px 60px 150px 70px 60px 120px 90px"
-        rows={6}
-      />
-    );
-  if (rows.captures.length > 0) return undefined;
+  if (rows.list.isPending || rows.captures.length > 0) return undefined;
   const { search, state, verdict, person, since } = filtering.address;
   const campaignAlone = [search, state, verdict, person, since].every((value) => value === undefined);
   if (campaign !== undefined && campaignAlone) {
@@ -170,8 +178,9 @@ function Foot({ rows: { list, captures, total } }: { rows: Rows }) {
     <div className="flex flex-wrap items-center gap-x-4 gap-y-1 border-t border-rule pt-3 text-caption text-ink2">
       {keysEnabled && (
         <p className="max-phone:hidden">
-          <span className="font-mono">j k</span> move, <span className="font-mono">Enter</span> opens,{' '}
-          <span className="font-mono">x</span> selects, <span className="font-mono">?</span> all keys
+          <span className="font-mono">j</span> <span className="font-mono">k</span> move,{' '}
+          <span className="font-mono">Enter</span> opens, <span className="font-mono">x</span> selects,{' '}
+          <span className="font-mono">?</span> all keys
         </p>
       )}
       <p className="ml-auto">

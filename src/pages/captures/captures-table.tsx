@@ -1,17 +1,13 @@
-import { useTable, type Row } from '@tanstack/react-table';
-import { useWindowVirtualizer } from '@tanstack/react-virtual';
+import { useTable } from '@tanstack/react-table';
 import clsx from 'clsx';
-import { useEffect, useMemo, useRef, useState, type ReactNode } from 'react';
-import { Progress } from '../../components/ui/progress.tsx';
-import { countWords } from '../../lib/format.ts';
+import { useMemo, useRef, type ReactNode } from 'react';
+import { useLate } from '../../lib/use-late.ts';
 import { usePhone } from '../../lib/use-media.ts';
-import { columnsFor, features, RESULT_COLUMNS, RIGHT, ROW_HEIGHT, WIDTHS } from './columns.tsx';
-import type { Group, Item, TableRow } from './rows.ts';
+import { CaptureRow, Tick } from './capture-row.tsx';
+import { columnsFor, features, GROUP_HEIGHT, padding, RIGHT, ROW_HEIGHT, widthOf } from './columns.tsx';
+import { useRowWindow } from './use-row-window.ts';
+import type { Group, Item } from './rows.ts';
 import { WhiskerAxis, type Axis } from './whisker.tsx';
-
-const GROUP_HEIGHT = 46;
-/** Longer tables draw only the rows around the window. */
-const VIRTUAL_FROM = 100;
 
 interface Props {
   items: readonly Item[];
@@ -23,8 +19,10 @@ interface Props {
   /** Row that j and k have reached. */
   currentId: string | null;
   onCurrent: (id: string) => void;
-  /** Loading bars or the like, in place of rows. */
+  /** What stands in place of rows where there are none. */
   placeholder?: ReactNode;
+  /** Blank bars under the heads, once loading takes more than 200 ms. */
+  loading: boolean;
 }
 
 export function CapturesTable({
@@ -36,6 +34,7 @@ export function CapturesTable({
   currentId,
   onCurrent,
   placeholder,
+  loading,
 }: Props) {
   const phone = usePhone();
   const columns = columnsFor(phone, grouped);
@@ -60,9 +59,9 @@ export function CapturesTable({
         aria-rowcount={window_.virtual ? items.length + 1 : undefined}
       >
         <colgroup>
-          <col style={{ width: phone ? 36 : WIDTHS.select }} />
+          <col style={{ width: widthOf('select', phone, grouped) }} />
           {ids.map((id) => (
-            <col key={id} style={{ width: phone && id === 'capture' ? 150 : WIDTHS[id] }} />
+            <col key={id} style={{ width: widthOf(id, phone, grouped) }} />
           ))}
         </colgroup>
         <thead>
@@ -106,6 +105,7 @@ export function CapturesTable({
           </tr>
         </thead>
         <tbody ref={body}>
+          {loading && <LoadingCells ids={ids} />}
           {placeholder !== undefined && (
             <tr>
               <td colSpan={ids.length + 1}>{placeholder}</td>
@@ -145,63 +145,6 @@ export function CapturesTable({
   );
 }
 
-/** Which items to draw, and the heights of what is left out before and after; follows the current row. */
-function useRowWindow(
-  items: readonly Item[],
-  body: React.RefObject<HTMLTableSectionElement | null>,
-  currentId: string | null,
-) {
-  const virtual = items.length > VIRTUAL_FROM;
-  const [margin, setMargin] = useState(0);
-  useEffect(() => {
-    const observer = new ResizeObserver(() => {
-      if (body.current !== null)
-        setMargin(Math.round(body.current.getBoundingClientRect().top + window.scrollY));
-    });
-    observer.observe(document.body);
-    return () => observer.disconnect();
-  }, [body]);
-  const virtualizer = useWindowVirtualizer({
-    count: virtual ? items.length : 0,
-    estimateSize: (index) => (items[index].kind === 'group' ? GROUP_HEIGHT : ROW_HEIGHT),
-    overscan: 14,
-    scrollMargin: margin,
-  });
-  useEffect(() => {
-    if (currentId === null) return;
-    const index = items.findIndex((item) => item.kind === 'row' && item.row.capture.id === currentId);
-    const link = document.getElementById(`capture-${currentId}`);
-    if (link === null && virtual && index >= 0) virtualizer.scrollToIndex(index, { align: 'center' });
-    const frame = requestAnimationFrame(() => {
-      const found = document.getElementById(`capture-${currentId}`);
-      found?.focus({ preventScroll: true });
-      found?.closest('tr')?.scrollIntoView({ block: 'nearest' });
-    });
-    return () => cancelAnimationFrame(frame);
-    // Only a move of the current row moves the focus, not every change of the list.
-    // eslint-disable-next-line react-hooks/exhaustive-deps
-  }, [currentId]);
-  if (!virtual) return { virtual, first: 0, last: items.length - 1, before: 0, after: 0 };
-  const shown = virtualizer.getVirtualItems();
-  const first = shown.at(0);
-  const last = shown.at(-1);
-  if (first === undefined || last === undefined)
-    return { virtual, first: 0, last: Math.min(items.length, 40) - 1, before: 0, after: 0 };
-  return {
-    virtual,
-    first: first.index,
-    last: last.index,
-    before: first.start - margin,
-    after: virtualizer.getTotalSize() - (last.end - margin),
-  };
-}
-
-function padding(id: string): string {
-  if (id === 'averaging' || id === 'state') return 'pl-6';
-  if (id === 'by' || id === 'campaign') return 'pl-2';
-  return '';
-}
-
 function GroupRow({
   group,
   ids,
@@ -232,126 +175,20 @@ function GroupRow({
   );
 }
 
-type TheRow = Row<typeof features, TableRow>;
-type Cell = ReturnType<TheRow['getAllCells']>[number];
-
-interface CaptureRowProps {
-  row: TheRow;
-  flex: (cell: Cell) => ReactNode;
-  ids: string[];
-  phone: boolean;
-  rowNumber: number | undefined;
-  selected: boolean;
-  current: boolean;
-  onSelect: (checked: boolean) => void;
-  onFocus: () => void;
-}
-
-function CaptureRow({
-  row,
-  flex,
-  ids,
-  phone,
-  rowNumber,
-  selected,
-  current,
-  onSelect,
-  onFocus,
-}: CaptureRowProps) {
-  const { capture } = row.original;
-  const sentence = rowSentence(row.original);
-  const stuck = phone ? 'sticky z-10 bg-paper' : '';
-  return (
-    <tr
-      aria-rowindex={rowNumber}
-      aria-current={current || undefined}
-      onFocus={onFocus}
-      style={{ height: ROW_HEIGHT }}
-      className={clsx(
-        'relative border-b border-rule2 transition-colors duration-[120ms] hover:bg-hover has-[a:focus-visible]:outline-2 has-[a:focus-visible]:-outline-offset-2 has-[a:focus-visible]:outline-est',
-        selected && 'bg-selected',
-      )}
-    >
-      <td className={clsx('relative z-[1]', stuck, 'left-0')}>
-        <Tick label={`Select ${capture.name}`} checked={selected} onChange={onSelect} />
-      </td>
-      {row.getAllCells().map((cell) => {
-        const { id } = cell.column;
-        if (sentence !== null && RESULT_COLUMNS.includes(id)) {
-          if (id !== RESULT_COLUMNS[0]) return null;
-          return (
-            <td
-              key={cell.id}
-              colSpan={ids.filter((name) => RESULT_COLUMNS.includes(name)).length}
-              className="pr-4 pl-6"
-            >
-              {sentence}
-            </td>
-          );
-        }
-        return (
-          <td
-            key={cell.id}
-            className={clsx(
-              RIGHT.has(id) && 'text-right',
-              padding(id),
-              id === 'capture' && clsx('pr-2', stuck, phone && 'left-9 border-r border-r-rule'),
-            )}
-          >
-            {flex(cell)}
-          </td>
-        );
-      })}
+function LoadingCells({ ids }: { ids: string[] }) {
+  const late = useLate(true);
+  if (!late) return null;
+  return Array.from({ length: 6 }, (_, row) => (
+    <tr key={row} className="border-b border-rule2" style={{ height: ROW_HEIGHT }}>
+      <td>{row === 0 && <span className="sr-only">Loading the captures</span>}</td>
+      {ids.map((id, column) => (
+        <td key={id} className={padding(id)}>
+          <span
+            className={clsx('block h-2 bg-rule2', RIGHT.has(id) && 'ml-auto')}
+            style={{ width: `${50 + ((row * 17 + column * 29) % 36)}%` }}
+          />
+        </td>
+      ))}
     </tr>
-  );
-}
-
-/** What a row without a result says instead: how far the reading is, or why it stopped. */
-function rowSentence({ capture: { state, progress, problem } }: TableRow): ReactNode {
-  if (state === 'unreadable') {
-    return (
-      <span className="line-clamp-2 text-bad">
-        {problem === null ? 'The file can’t be read.' : problem.message}
-      </span>
-    );
-  }
-  if (state === 'received') return <span className="text-ink3">waits to be read</span>;
-  if (state !== 'reading') return null;
-  const words =
-    progress === null
-      ? 'reading'
-      : `reading ${countWords(progress.points)}${progress.ofPoints === null ? '' : ` of ${countWords(progress.ofPoints)}`}`;
-  return (
-    <div className="grid max-w-[260px] gap-1">
-      <span className="font-mono text-caption text-ink3">{words}</span>
-      <Progress label={words} share={progress?.ofPoints ? progress.points / progress.ofPoints : null} />
-    </div>
-  );
-}
-
-function Tick({
-  label,
-  checked,
-  partly = false,
-  onChange,
-}: {
-  label: string;
-  checked: boolean;
-  partly?: boolean;
-  onChange: (checked: boolean) => void;
-}) {
-  return (
-    <label className="grid size-6 cursor-pointer place-items-center justify-items-start max-phone:size-9 max-phone:place-items-center">
-      <span className="sr-only">{label}</span>
-      <input
-        type="checkbox"
-        className="check"
-        checked={checked}
-        ref={(input) => {
-          if (input !== null) input.indeterminate = partly;
-        }}
-        onChange={(event) => onChange(event.target.checked)}
-      />
-    </label>
-  );
+  ));
 }

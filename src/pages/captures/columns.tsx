@@ -15,9 +15,10 @@ export const features = tableFeatures({});
 const helper = createColumnHelper<typeof features, TableRow>();
 
 export const ROW_HEIGHT = 45;
+export const GROUP_HEIGHT = 46;
 
 /** Widths in px; `capture` takes what is left. */
-export const WIDTHS: Record<string, number | undefined> = {
+const WIDTHS: Record<string, number | undefined> = {
   select: 28,
   trace: 119,
   campaign: 116,
@@ -32,7 +33,36 @@ export const WIDTHS: Record<string, number | undefined> = {
   by: 101,
 };
 
+/** Ungrouped, the campaign's column takes its room from these. */
+const LIST_WIDTHS: Record<string, number | undefined> = {
+  ...WIDTHS,
+  campaign: 110,
+  averaging: 152,
+  uncertainty: 58,
+  state: 121,
+  by: 96,
+};
+const PHONE_WIDTHS: Record<string, number | undefined> = {
+  select: 36,
+  capture: 150,
+  density: 84,
+  uncertainty: 66,
+  averaging: 184,
+};
+
+export function widthOf(id: string, phone: boolean, grouped: boolean): number | undefined {
+  const widths = grouped ? WIDTHS : LIST_WIDTHS;
+  return phone ? (PHONE_WIDTHS[id] ?? widths[id]) : widths[id];
+}
+
 export const RIGHT = new Set(['centre', 'rbw', 'density', 'uncertainty', 'spurs']);
+/** Room at the left of a column's cells. */
+export function padding(id: string): string {
+  if (id === 'averaging' || id === 'state') return 'pl-6';
+  if (id === 'by' || id === 'campaign') return 'pl-2';
+  return '';
+}
+
 /** Cells that a row without a result gives to its sentence. */
 export const RESULT_COLUMNS = ['averaging', 'density', 'uncertainty', 'whisker'];
 
@@ -182,9 +212,9 @@ const WIDE = [
 ] as const;
 const PHONE = [
   'capture',
-  'averaging',
   'density',
   'uncertainty',
+  'averaging',
   'whisker',
   'spurs',
   'state',

@@ -40,11 +40,13 @@ interface Props {
   selected: readonly CaptureSummary[];
   campaigns: readonly Campaign[];
   onClear: () => void;
+  /** Asks for a new campaign and goes on with it. */
+  onNew: (then: (campaign: Campaign) => void) => void;
   moves: ReturnType<typeof useMoves>;
 }
 
 /** What can be done with the selected rows; stands at the foot of the window while any is selected. */
-export function SelectionBar({ selected, campaigns, onClear, moves }: Props) {
+export function SelectionBar({ selected, campaigns, onClear, onNew, moves }: Props) {
   if (selected.length === 0) return null;
   const moveTo = (to: string | null, name: string) =>
     moves.mutate({
@@ -72,6 +74,7 @@ export function SelectionBar({ selected, campaigns, onClear, moves }: Props) {
         }
         items={[
           ...campaigns.map(({ id, name }) => ({ label: name, onSelect: () => moveTo(id, `“${name}”`) })),
+          { label: 'a new campaign…', onSelect: () => onNew(({ id, name }) => moveTo(id, `“${name}”`)) },
           { label: 'no campaign', onSelect: () => moveTo(null, 'no campaign') },
         ]}
       />

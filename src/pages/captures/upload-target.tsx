@@ -3,6 +3,7 @@ import type { Campaign } from '../../../shared/capture.ts';
 import { Select } from '../../components/ui/listbox.tsx';
 
 const NONE = 'none';
+const NEW = 'new';
 
 export interface Target {
   campaignId: string | null;
@@ -44,9 +45,14 @@ export function useUploadTarget(
   };
 }
 
+interface UploadTargetProps {
+  target: Target;
+  campaigns: readonly Campaign[];
+  onNew: () => void;
+}
+
 /** “into …”, at the right of the drop line. */
-export function UploadTarget({ target, campaigns }: { target: Target; campaigns: readonly Campaign[] }) {
-  if (campaigns.length === 0) return null;
+export function UploadTarget({ target, campaigns, onNew }: UploadTargetProps) {
   return (
     <p className="ml-auto flex items-center gap-1.5 text-caption text-ink2 max-phone:ml-0">
       into
@@ -54,10 +60,11 @@ export function UploadTarget({ target, campaigns }: { target: Target; campaigns:
         look="inline"
         label="Campaign for new captures"
         value={target.campaignId ?? NONE}
-        onChange={(value) => target.choose(value === NONE ? null : value)}
+        onChange={(value) => (value === NEW ? onNew() : target.choose(value === NONE ? null : value))}
         options={[
           { value: NONE, label: 'no campaign' },
           ...campaigns.map(({ id, name }) => ({ value: id, label: name })),
+          { value: NEW, label: 'a new campaign…' },
         ]}
       />
     </p>

@@ -1,8 +1,17 @@
 import { isRouteErrorResponse, useRouteError } from 'react-router-dom';
 import { Button } from '../../components/ui/button.tsx';
 
-/** What stands in for a screen that failed. */
+/** What stands in for the whole page when it failed. */
 export function ErrorPage() {
+  return (
+    <main className="p-8">
+      <ErrorPanel />
+    </main>
+  );
+}
+
+/** What stands in for a screen that failed; the rail stays. */
+export function ErrorPanel() {
   const error = useRouteError();
   const detail = isRouteErrorResponse(error)
     ? error.statusText
@@ -11,7 +20,7 @@ export function ErrorPage() {
       : String(error);
   const stale = /dynamically imported module|Importing a module/i.test(detail);
   return (
-    <main className="max-w-[640px] p-8">
+    <div className="max-w-[640px]">
       <title>Stopped · Perhertz</title>
       <h1 className="text-title font-semibold">This screen stopped</h1>
       <p className="mt-3 text-verdict">
@@ -28,6 +37,6 @@ export function ErrorPage() {
           Go to the captures
         </Button>
       </div>
-    </main>
+    </div>
   );
 }

@@ -3,6 +3,7 @@ import { useLocation } from 'react-router-dom';
 import { useHealth } from '../../api/session.ts';
 import { PageHead } from '../../components/layout/page-head.tsx';
 import { Message } from '../../components/ui/message.tsx';
+import { FormulaText } from './formula-text.tsx';
 import { CAUTIONS, METHOD, type MethodSection } from './method-content.ts';
 
 /** How each line is computed, with sources, limits and cautions. Ledger lines link here. */
@@ -61,7 +62,9 @@ function Step({ section, number }: { section: MethodSection; number: number }) {
       </div>
       <ul className="my-3 grid gap-1 border-l-2 border-est pl-3 text-[15px] leading-6">
         {formulas.map((formula) => (
-          <li key={formula}>{formula}</li>
+          <li key={formula}>
+            <FormulaText text={formula} />
+          </li>
         ))}
       </ul>
       {check !== undefined && <CheckTable {...check} title={title} />}
@@ -76,7 +79,7 @@ function Step({ section, number }: { section: MethodSection; number: number }) {
         <dd className="grid gap-1">
           {sources.map(({ basis, text }) => (
             <p key={text}>
-              <em>{basis}</em>: {text}
+              <span className="text-ink3">{basis}:</span> {text}
             </p>
           ))}
         </dd>

@@ -94,7 +94,8 @@ function Form({ destination, asked }: { destination: string; asked: boolean }) {
         </Button>
       </div>
       <p className="mt-3 border-t border-rule pt-4 text-caption text-ink3">
-        New here, or the password is forgotten? The administrator of your lab lets you in.
+        You stay signed in on this computer for 12 hours after your last visit. New here, or the password is
+        forgotten? The administrator of your lab lets you in.
       </p>
     </form>
   );
