@@ -135,7 +135,14 @@ export const AveragingCheck = z.object({
   /** Residuals in dB about the mean level: bin edges (count + 1) and the share of points in each. */
   histogram: z.object({ edgesDb: z.array(z.number()), counts: z.array(z.number()) }).nullable(),
   /** Predicted probability density per dB of the residual, one curve per hypothesis that matters. */
-  curves: z.array(z.object({ id: Hypothesis.shape.id, label: z.string(), atDb: z.array(z.number()), density: z.array(z.number()) })),
+  curves: z.array(
+    z.object({
+      id: Hypothesis.shape.id,
+      label: z.string(),
+      atDb: z.array(z.number()),
+      density: z.array(z.number()),
+    }),
+  ),
 });
 export type AveragingCheck = z.infer<typeof AveragingCheck>;
 
@@ -167,7 +174,14 @@ export const Density = z.object({
 });
 export type Density = z.infer<typeof Density>;
 
-export const EstimateState = z.enum(['working', 'submitted', 'verified', 'returned', 'withdrawn', 'superseded']);
+export const EstimateState = z.enum([
+  'working',
+  'submitted',
+  'verified',
+  'returned',
+  'withdrawn',
+  'superseded',
+]);
 export type EstimateState = z.infer<typeof EstimateState>;
 
 /** What the engine computes: everything that follows from the trace, the settings and the exclusions alone. */
@@ -203,7 +217,15 @@ export const EngineEstimate = z.object({
   /** null where no density can be given; a stop finding says why. */
   density: Density.nullable(),
   /** The density under each averaging that fits, where the answer depends on what isn't known. */
-  alternatives: z.array(z.object({ label: z.string(), when: z.string(), dbmPerHz: z.number(), lowDbmPerHz: z.number(), highDbmPerHz: z.number() })),
+  alternatives: z.array(
+    z.object({
+      label: z.string(),
+      when: z.string(),
+      dbmPerHz: z.number(),
+      lowDbmPerHz: z.number(),
+      highDbmPerHz: z.number(),
+    }),
+  ),
   budget: z.array(BudgetLine),
   /** Settings without which no single density can be given, such as `rbwHz` or `averagingScale`. */
   missingSettings: z.array(z.string()),

@@ -94,7 +94,9 @@ export type SettingValues = z.infer<typeof SettingValues>;
 export type SettingName = keyof SettingValues;
 
 /** Settings with where each came from. */
-export type Settings = { [Name in SettingName]?: { value: NonNullable<SettingValues[Name]>; origin: Origin } };
+export type Settings = {
+  [Name in SettingName]?: { value: NonNullable<SettingValues[Name]>; origin: Origin };
+};
 
 const shape = SettingValues.shape;
 const originated = <T extends z.ZodType>(value: T) => z.object({ value, origin: Origin }).optional();
@@ -133,5 +135,7 @@ export const Settings = z.object({
 
 /** Setting changes that a person sends: a value sets it, null takes it back to what the file says. */
 export const SettingChanges = z.strictObject(
-  Object.fromEntries(Object.entries(shape).map(([name, schema]) => [name, schema.unwrap().nullable().optional()])),
+  Object.fromEntries(
+    Object.entries(shape).map(([name, schema]) => [name, schema.unwrap().nullable().optional()]),
+  ),
 );

@@ -1,4 +1,4 @@
-/** Legendre series up to the second degree on -1 to 1. */
+/** Legendre series on -1 to 1. */
 export interface PolynomialFit {
   coefficients: number[];
   /** Covariance of the coefficients. */
@@ -6,41 +6,78 @@ export interface PolynomialFit {
   degree: number;
 }
 
-/** Value of a Legendre series of degree 0 to 2 at u: c0 + c1·u + c2·(3u² - 1)/2. */
+/** What a further term of the series must take off chi-square to be worth having. */
+const WORTH_OF_A_TERM = 5;
+
+/** Value of a Legendre series at u, -1 to 1: c0 + c1·u + c2·(3u² - 1)/2 + … */
 export function legendre(coefficients: readonly number[], u: number): number {
+  let before = 1;
+  let current = u;
   let sum = coefficients[0];
-  if (coefficients.length > 1) sum += coefficients[1] * u;
-  if (coefficients.length > 2) sum += coefficients[2] * 0.5 * (3 * u * u - 1);
+  for (let order = 1; order < coefficients.length; order++) {
+    sum += coefficients[order] * current;
+    const next = ((2 * order + 1) * u * current - order * before) / (order + 1);
+    before = current;
+    current = next;
+  }
   return sum;
 }
 
+/** Legendre polynomials of degree 0 to `degree` at u. */
 export function legendreBasis(u: number, degree: number): number[] {
-  return [1, u, 0.5 * (3 * u * u - 1)].slice(0, degree + 1);
+  const basis = [1, u];
+  for (let order = 1; order < degree; order++) {
+    basis.push(((2 * order + 1) * u * basis[order] - order * basis[order - 1]) / (order + 1));
+  }
+  return basis.slice(0, degree + 1);
 }
 
 /**
- * Weighted least squares of a Legendre series; the degree (0, 1, 2) is the highest whose last coefficient stands more
- * than three standard deviations off zero, unless it is given.
+ * Weighted least squares of a Legendre series whose degree is the one with the least chi-square plus 5 per term; a
+ * value counts in that with at most 16.
  *
- * @param at places on -1 to 1
+ * @param at rising places on -1 to 1; the degree stays below a third of their number and below what their widest gap bears
  * @param values one per place
  * @param deviations standard deviation of each value
  * @param robust true: values far off (more than 2.5 deviations) lose weight, after Huber
+ * @param highest highest degree tried
  */
 export function fitPolynomial(
   at: readonly number[],
   values: readonly number[],
   deviations: readonly number[],
   robust: boolean,
-  degree?: number,
+  highest = 2,
 ): PolynomialFit {
-  const highest = Math.min(degree ?? 2, at.length - 1);
-  for (let tried = highest; tried > 0; tried--) {
-    const fit = fitDegree(at, values, deviations, robust, tried);
-    const last = fit.coefficients[tried];
-    if (degree !== undefined || last * last > 9 * fit.covariance[tried][tried]) return fit;
+  let widest = 0;
+  for (let index = 1; index < at.length; index++) widest = Math.max(widest, at[index] - at[index - 1]);
+  const bearable = Math.max(2, Math.floor(1.2 / Math.max(widest, 1e-9)));
+  const last = Math.min(highest, bearable, Math.max(1, Math.floor(at.length / 3)), at.length - 1);
+  let best = fitDegree(at, values, deviations, robust, 0);
+  let bestCost = chiSquare(at, values, deviations, best);
+  for (let degree = 1; degree <= last; degree++) {
+    const fit = fitDegree(at, values, deviations, robust, degree);
+    const cost = chiSquare(at, values, deviations, fit) + WORTH_OF_A_TERM * degree;
+    if (cost < bestCost) {
+      best = fit;
+      bestCost = cost;
+    } else if (degree >= best.degree + 4) {
+      break;
+    }
   }
-  return fitDegree(at, values, deviations, robust, 0);
+  return best;
+}
+
+function chiSquare(
+  at: readonly number[],
+  values: readonly number[],
+  deviations: readonly number[],
+  fit: PolynomialFit,
+): number {
+  return values.reduce((sum, value, index) => {
+    const sigmas = (value - legendre(fit.coefficients, at[index])) / deviations[index];
+    return sum + Math.min(16, sigmas * sigmas);
+  }, 0);
 }
 
 function fitDegree(

@@ -1,9 +1,12 @@
-import { fitPolynomial, legendre, type PolynomialFit } from './floor-polynomial.ts';
+import { fitPolynomial, legendre, legendreBasis, multiply, type PolynomialFit } from './floor-polynomial.ts';
 import { sampleQuantile } from './floor-quantile.ts';
 import type { PointLaw } from './point-law.ts';
 
 const LARGEST_SAMPLE = 2048;
 const MOST_BLOCKS = 64;
+const HIGHEST_DEGREE = 12;
+const GRID = 4096;
+const CELL_NODES = 65;
 const FEWEST_INDEPENDENT_PER_BLOCK = 24;
 const FILTER_WIDTHS_PER_BLOCK = 40;
 
@@ -19,13 +22,15 @@ export interface FloorOptions {
   quantile?: number;
   /** Share of the points that count as independent; absent: spacing over 1.5 filter widths, at most 1. */
   independentFraction?: number;
+  /** True: the shortest blocks at once, for residuals that no slow shape of the floor may colour. */
+  shortest?: boolean;
 }
 
 export interface LocalFloor {
   /** Mean linear power of a displayed point of noise alone, per point, in the unit of the input. */
   floorPower: Float64Array;
-  /** Independent points that a floor value rests on: its relative variance is relativeVariance/cells. */
-  cells: number;
+  /** Independent points that a floor value rests on, at the 65 places that part the span evenly: its relative variance is relativeVariance/cells. */
+  cellsAt: Float64Array;
   /** Blocks between which the floor is interpolated; 0: a smooth trend over the whole span. */
   blocks: number;
 }
@@ -43,7 +48,7 @@ interface BlockLevels {
  * Local noise floor as mean linear power per point, robust against spurs.
  *
  * Levels are quantiles of linear power in blocks, divided by the law's own quantile relative to its mean. The simplest
- * description that the blocks allow is taken: level, tilt or curve over the whole span, else interpolation in dB between
+ * description that the blocks allow is taken: a polynomial in dB over the whole span, else interpolation in dB between
  * ever shorter overlapping blocks until blocks half as long agree with it. A block never gets shorter than 40 filter
  * widths or 24 independent points, so it can't follow a spur.
  *
@@ -66,41 +71,45 @@ export function robustFloor(
     blockLevels(powerMw, frequencyHz, options.excluded, blocks, overlapping, quantile, law, fraction);
 
   const independent = Math.max(1, kept * fraction);
-  const trendBlocks = Math.max(1, Math.min(16, Math.floor(independent / 12), length));
+  const trendBlocks = Math.max(1, Math.min(MOST_BLOCKS, Math.floor(independent / 12), length));
   const trendLevels = measure(trendBlocks, false);
-  const trend = fitPolynomial(trendLevels.at, trendLevels.level, trendLevels.deviation, quantile < 0.5);
+  const { at, level, deviation } = trendLevels;
+  const trend = fitPolynomial(at, level, deviation, quantile < 0.5, HIGHEST_DEGREE);
+  const reach = trend.degree > 2 ? 1 / trendBlocks : 1;
+  const lowest = at[0] - reach;
+  const highest = at[at.length - 1] + reach;
+  const inside = (u: number) => Math.min(highest, Math.max(lowest, u));
+  const trendAt = (u: number) => legendre(trend.coefficients, inside(u));
   const efficiency = options.law.relativeVariance / law.variance;
   const finest = finestBlocks(length, independent, options);
 
-  if (finest < 4 || agrees(trendLevels, (at) => legendre(trend.coefficients, at), trend.degree + 1)) {
-    const finer = finest >= 4 ? measure(Math.min(finest, 4 * trendBlocks), false) : trendLevels;
-    if (finest < 4 || agrees(finer, (at) => legendre(trend.coefficients, at), 0)) {
-      const floorPower = new Float64Array(length);
-      const scaled = scaledAxis(frequencyHz);
-      for (let index = 0; index < length; index++) {
-        floorPower[index] = Math.exp(legendre(trend.coefficients, scaled(index)));
-      }
-      const parameters = trend.degree + 1;
-      return {
-        floorPower,
-        cells: Math.max(1, (independent * efficiency) / (1.5 * parameters)),
-        blocks: 0,
-      };
-    }
+  if (finest < 4 || (options.shortest !== true && agrees(trendLevels, trendAt, trend.degree + 1))) {
+    return {
+      floorPower: evaluate(frequencyHz, trendAt),
+      cellsAt: Float64Array.from({ length: CELL_NODES }, (_, node) => {
+        const basis = legendreBasis(inside((2 * node) / (CELL_NODES - 1) - 1), trend.degree);
+        const spread = multiply(trend.covariance, basis).reduce(
+          (sum, entry, row) => sum + entry * basis[row],
+          0,
+        );
+        return options.law.relativeVariance / spread;
+      }),
+      blocks: 0,
+    };
   }
 
-  const curve = fitPolynomial(trendLevels.at, trendLevels.level, trendLevels.deviation, true, 2);
-  let blocks = 4;
+  const curve = fitPolynomial(at, level, deviation, true);
+  let blocks = options.shortest === true ? finest : 4;
   let knots = measure(blocks, true);
   while (blocks * 2 <= finest) {
     const finer = measure(blocks * 2, false);
-    if (agrees(finer, interpolator(knots, curve), 0)) break;
+    if (agrees(finer, interpolator(knots, curve), 0, 1)) break;
     blocks *= 2;
     knots = measure(blocks, true);
   }
   return {
-    floorPower: interpolated(frequencyHz, knots, curve),
-    cells: Math.max(1, (independent / blocks) * efficiency),
+    floorPower: evaluate(frequencyHz, interpolator(knots, curve)),
+    cellsAt: new Float64Array(CELL_NODES).fill(Math.max(1, (independent / blocks) * efficiency)),
     blocks,
   };
 }
@@ -213,20 +222,25 @@ function onlyBlock(
 }
 
 /**
- * Whether block levels scatter about a description no more than their own deviations allow, at about one in a thousand
- * (Wilson and Hilferty's approximation of chi-square). Each block counts with at most 16, so that one or two spoilt
- * blocks don't decide.
+ * Whether block levels scatter about a description no more than their own deviations allow: chi-square below its mean
+ * plus so many standard deviations (Wilson and Hilferty's approximation), 3.1 standing for one in a thousand. Each block
+ * counts with at most 16, so that one or two spoilt blocks don't decide.
  */
-function agrees(levels: BlockLevels, describe: (at: number) => number, parameters: number): boolean {
+function agrees(
+  levels: BlockLevels,
+  describe: (at: number) => number,
+  parameters: number,
+  sigmasAllowed = 3.1,
+): boolean {
   const degrees = levels.at.length - parameters;
   if (degrees < 1) return true;
   let chiSquare = 0;
   levels.at.forEach((at, block) => {
-    const sigmas = (levels.level[block] - describe(at)) / (1.1 * levels.deviation[block]);
+    const sigmas = (levels.level[block] - describe(at)) / levels.deviation[block];
     chiSquare += Math.min(16, sigmas * sigmas);
   });
   const spread = 2 / (9 * degrees);
-  return chiSquare < degrees * (1 - spread + 3.1 * Math.sqrt(spread)) ** 3;
+  return chiSquare < degrees * (1 - spread + sigmasAllowed * Math.sqrt(spread)) ** 3;
 }
 
 /** Linear in the log between knots about a curve over the span; flat about that curve beyond the outer knots. */
@@ -245,11 +259,22 @@ function interpolator(knots: BlockLevels, curve: PolynomialFit): (at: number) =>
   };
 }
 
-function interpolated(frequencyHz: Float64Array, knots: BlockLevels, curve: PolynomialFit): Float64Array {
-  const scaled = scaledAxis(frequencyHz);
-  const levelAt = interpolator(knots, curve);
-  const floorPower = new Float64Array(frequencyHz.length);
-  for (let index = 0; index < floorPower.length; index++)
-    floorPower[index] = Math.exp(levelAt(scaled(index)));
+/** Linear power from a log level by place: exact on a fine grid, linear between its nodes. */
+function evaluate(frequencyHz: Float64Array, levelAt: (at: number) => number): Float64Array {
+  const length = frequencyHz.length;
+  const first = frequencyHz[0];
+  const span = frequencyHz[length - 1] - first;
+  const floorPower = new Float64Array(length);
+  if (!(span > 0)) return floorPower.fill(Math.exp(levelAt(0)));
+  const cells = Math.min(GRID, length);
+  const nodes = Float64Array.from({ length: cells + 2 }, (_, node) =>
+    Math.exp(levelAt((2 * node) / cells - 1)),
+  );
+  const scale = cells / span;
+  for (let index = 0; index < length; index++) {
+    const place = (frequencyHz[index] - first) * scale;
+    const node = Math.floor(place);
+    floorPower[index] = nodes[node] + (place - node) * (nodes[node + 1] - nodes[node]);
+  }
   return floorPower;
 }

@@ -11,8 +11,8 @@ export interface DetectionInput {
   powerMw: Float64Array;
   frequencyHz: Float64Array;
   floorPower: Float64Array;
-  /** A point above this factor times its floor exceeds it. */
-  factor: number;
+  /** Per point: what its power must exceed to stand out. */
+  thresholdPower: Float64Array;
   excluded: Uint8Array;
   skirt: Skirt;
   filterWidthHz: number;
@@ -59,7 +59,7 @@ export function detect(input: DetectionInput): Detection {
 
 /** Clusters of exceedances, split at deep dips. */
 function gather(input: DetectionInput): Peak[] {
-  const { powerMw, frequencyHz, floorPower, factor, excluded, filterWidthHz } = input;
+  const { powerMw, frequencyHz, thresholdPower, excluded, filterWidthHz } = input;
   const gapHz = 1.5 * filterWidthHz;
   const clusters: Peak[] = [];
   let first = -1;
@@ -70,7 +70,7 @@ function gather(input: DetectionInput): Peak[] {
       clusters.push({ index: peak, from: first, to: last, firstExceeding: first, lastExceeding: last });
   };
   for (let index = 0; index < powerMw.length; index++) {
-    if (!(powerMw[index] > factor * floorPower[index]) || excluded[index] === 1) continue;
+    if (!(powerMw[index] > thresholdPower[index]) || excluded[index] === 1) continue;
     if (first < 0 || (index - last > 1 && frequencyHz[index] - frequencyHz[last] > gapHz)) {
       close();
       first = index;
@@ -104,7 +104,7 @@ function split(input: DetectionInput, cluster: Peak): Peak[] {
       }
     } else {
       if (powerMw[index] < powerMw[dip]) dip = index;
-      if (powerMw[index] > powerMw[dip] * ratio && powerMw[index] > input.factor * input.floorPower[index]) {
+      if (powerMw[index] > powerMw[dip] * ratio && powerMw[index] > input.thresholdPower[index]) {
         dips.push(dip);
         top = index;
         falling = false;
@@ -133,7 +133,7 @@ function split(input: DetectionInput, cluster: Peak): Peak[] {
 }
 
 function guard(input: DetectionInput, candidates: Peak[], guardDb: number): Detection {
-  const { powerMw, frequencyHz, floorPower, factor, skirt } = input;
+  const { powerMw, frequencyHz, floorPower, thresholdPower, skirt } = input;
   const length = powerMw.length;
   const mask = new Uint8Array(length);
   const leak = new Float64Array(length);
@@ -156,7 +156,7 @@ function guard(input: DetectionInput, candidates: Peak[], guardDb: number): Dete
     }
   };
   const explained = (index: number) =>
-    Math.sqrt(powerMw[index]) <= Math.sqrt(leak[index]) + Math.sqrt(factor * floorPower[index]);
+    Math.sqrt(powerMw[index]) <= Math.sqrt(leak[index]) + Math.sqrt(thresholdPower[index]);
 
   const byStrength = [...candidates].sort((one, other) => powerMw[other.index] - powerMw[one.index]);
   for (const candidate of byStrength) {

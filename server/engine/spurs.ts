@@ -6,7 +6,7 @@ import { findFamilies } from './spurs-families.ts';
 import { tabulateSkirt } from './spurs-guard.ts';
 import { type AveragingScale } from './spurs-level.ts';
 import { measureSpur } from './spurs-measure.ts';
-import { thresholdFactor } from './spurs-threshold.ts';
+import { thresholdFactor, thresholds, videoTailFactor } from './spurs-threshold.ts';
 
 const DB_PER_NEPER = 10 / Math.LN10;
 /** An oversampled envelope crosses a high level up to this many times as often as its independent values. */
@@ -33,6 +33,8 @@ export interface SpurSearch {
   excluded?: Uint8Array;
   /** Independent points in the capture, where known; else taken from the data. */
   independentPoints?: number;
+  /** True where a one-pole video filter does part of the averaging: its law has the longer tail. */
+  videoSmoothed?: boolean;
   /** Step to which the file rounds levels. */
   roundingDb?: number;
 }
@@ -62,9 +64,8 @@ export interface SpursFound {
   mask: Uint8Array;
   /** The floor on which the last pass rests. */
   floorPower: Float64Array;
-  floorCells: number;
-  /** Points above this factor times the floor count as spurs. */
-  thresholdFactor: number;
+  /** Points above this power count as spurs. */
+  thresholdPower: Float64Array;
   /** Independent points among those searched. */
   independentPoints: number;
   /** What leaving out chance exceedances does to the mean of noise alone, dB (negative, tiny). */
@@ -101,9 +102,8 @@ export function findSpurs(search: SpurSearch): SpursFound {
     quantile: 0.2,
     independentFraction,
   });
-  let factor = 0;
+  let thresholdPower = new Float64Array(0);
   let probability = 0;
-  let known = '';
   for (let pass = 0; pass < PASSES; pass++) {
     if (pass > 0) {
       floor = robustFloor(powerMw, frequencyHz, {
@@ -120,16 +120,20 @@ export function findSpurs(search: SpurSearch): SpursFound {
       CROSSINGS_PER_INDEPENDENT * Math.max(1, searched * (independentFraction ?? 1)),
     );
     probability = -Math.expm1(Math.log1p(-search.falseAlarm) / crossings);
-    const state = `${floor.cells.toPrecision(2)} ${crossings.toPrecision(3)}`;
-    if (state !== known) {
-      factor = thresholdFactor(law, probability, floor.cells) * 10 ** ((search.roundingDb ?? 0) / 2 / 10);
-      known = state;
-    }
+    const tail = search.videoSmoothed === true ? videoTailFactor(law.relativeVariance, probability) : 1;
+    const rounding = 10 ** ((search.roundingDb ?? 0) / 2 / 10);
+    const chance = probability;
+    thresholdPower = thresholds(
+      floor.floorPower,
+      frequencyHz,
+      floor.cellsAt,
+      (cells) => thresholdFactor(law, chance, cells) * tail * rounding,
+    );
     const detection = detect({
       powerMw,
       frequencyHz,
       floorPower: floor.floorPower,
-      factor,
+      thresholdPower,
       excluded: person,
       skirt,
       filterWidthHz,
@@ -140,7 +144,7 @@ export function findSpurs(search: SpurSearch): SpursFound {
     if (settled) break;
     left = union(person, detection.mask);
     if (independentFraction === undefined) {
-      independentFraction = fractionFromData(search, floor.floorPower, left);
+      independentFraction = fractionFromData(search, left);
     }
   }
   const detection = found ?? { peaks: [], mask: new Uint8Array(length) };
@@ -149,12 +153,12 @@ export function findSpurs(search: SpurSearch): SpursFound {
   );
   markFamilies(spurs, search);
   const tau = 1 / (independentFraction ?? 1);
+  const factor = thresholdFactor(law, probability, Infinity);
   return {
     spurs,
     mask: detection.mask,
     floorPower: floor.floorPower,
-    floorCells: floor.cells,
-    thresholdFactor: factor,
+    thresholdPower,
     independentPoints: searched / tau,
     truncationBiasDb: -DB_PER_NEPER * probability * (factor - 1) * tau,
   };
@@ -172,8 +176,15 @@ function union(one: Uint8Array, other: Uint8Array): Uint8Array {
 }
 
 /** Share of independent points, from the correlation of at most 32768 points in the middle of the trace. */
-function fractionFromData(search: SpurSearch, floorPower: Float64Array, left: Uint8Array): number {
-  const { powerMw } = search;
+function fractionFromData(search: SpurSearch, left: Uint8Array): number {
+  const { powerMw, frequencyHz, law, spacingHz, filterWidthHz } = search;
+  const { floorPower } = robustFloor(powerMw, frequencyHz, {
+    law,
+    spacingHz,
+    filterWidthHz,
+    excluded: left,
+    shortest: true,
+  });
   const count = Math.min(powerMw.length, 32768);
   const start = (powerMw.length - count) >> 1;
   const residual = new Float64Array(count);
