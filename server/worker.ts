@@ -2,10 +2,9 @@ import { Logger as QueueLogger, run, type Runner } from 'graphile-worker';
 import { EventEmitter } from 'node:events';
 import { Pool } from 'pg';
 import { pino } from 'pino';
-import { z } from 'zod';
 import { readConfig } from './config.ts';
 import { createDataSource } from './database.ts';
-import { readCapture } from './jobs/read-capture.ts';
+import { taskList } from './jobs/task-list.ts';
 import { rescueCaptures } from './services/rescue-captures.ts';
 import { stopInTime } from './services/stop-in-time.ts';
 import { WorkerSigns } from './services/worker-signs.ts';
@@ -37,16 +36,7 @@ async function startQueue(): Promise<Runner> {
     logger: new QueueLogger(
       () => (level, message) => log[level === 'warning' ? 'warn' : level]?.({}, message),
     ),
-    taskList: {
-      'read-capture': (payload, { job, abortSignal }) =>
-        readCapture(z.object({ captureId: z.uuid() }).parse(payload).captureId, {
-          dataSource,
-          log,
-          version: config.version,
-          signal: abortSignal,
-          lastTry: job.attempts >= job.max_attempts,
-        }),
-    },
+    taskList: taskList({ dataSource, log, version: config.version }),
   });
   await signs.beat();
   return runner;

@@ -50,7 +50,9 @@ export class EventHub extends EventEmitter<{ event: [LabEvent]; lost: [] }> {
     this.#stopped = true;
     if (this.#retry) clearTimeout(this.#retry);
     this.emit('lost');
-    await this.#client?.end();
+    const client = this.#client;
+    this.#client = null;
+    await client?.end();
   }
 
   #receive(payload: string): void {

@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import bcrypt from 'bcryptjs';
 
-const COST = 11;
+const COST = 10;
 
 /** bcrypt reads 72 bytes at most; a digest of any password fits and keeps all of it. */
 const digest = (password: string) =>

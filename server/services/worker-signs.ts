@@ -44,17 +44,30 @@ export class WorkerSigns {
    * Frees the jobs of workers that gave no sign for six seconds.
    * @returns how many workers were dead.
    */
-  sweep(): Promise<number> {
-    return this.#free(
-      `seen_at < now() - make_interval(secs => ${DEAD_AFTER_SECONDS}) AND id <> $1`,
-      [this.#id],
-      () => true,
-    );
+  async sweep(): Promise<number> {
+    const silent = `seen_at < now() - make_interval(secs => ${DEAD_AFTER_SECONDS})`;
+    const dead = await this.#free(`${silent} AND id <> $1`, [this.#id], () => true);
+    return dead + (await this.#freeOrphans());
   }
 
   /** At start: frees the jobs of processes of this machine that are no longer there, without waiting. */
   freePredecessors(): Promise<number> {
     return this.#free('host = $1 AND id <> $2', [this.#host, this.#id], ({ pid }) => !isAlive(pid));
+  }
+
+  /** Jobs that are locked under a name which no living worker has, such as one killed before its first sign. */
+  async #freeOrphans(): Promise<number> {
+    const orphans = await this.#dataSource.query<{ name: string }[]>(
+      `SELECT DISTINCT locked_by AS name FROM graphile_worker.jobs
+       WHERE locked_at < now() - make_interval(secs => ${DEAD_AFTER_SECONDS})
+         AND NOT EXISTS (SELECT 1 FROM worker_heartbeat WHERE jobs.locked_by = ANY (lock_names))`,
+    );
+    if (orphans.length > 0) {
+      await this.#dataSource.query('SELECT graphile_worker.force_unlock_workers($1)', [
+        orphans.map(({ name }) => name),
+      ]);
+    }
+    return orphans.length;
   }
 
   async #free(
