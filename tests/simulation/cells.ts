@@ -1,5 +1,6 @@
 import type { SettingValues } from '../../shared/settings.ts';
 import type { AveragingCheck } from '../../shared/estimate.ts';
+import { mixSeed } from '../support/simulator/random.ts';
 import type { CaptureSpec, FftMode, SpurSpec } from '../support/simulator/spec.ts';
 
 /** One kind of capture: how it is made, what the engine is told of it, and what it should answer. */
@@ -306,3 +307,10 @@ const silentCells: Cell[] = [
 ];
 
 export const cells: Cell[] = [...cleanCells, ...burdenedCells, ...wrongCells, ...silentCells];
+
+const seedOf = (name: string) => [...name].reduce((hash, letter) => mixSeed(hash, letter.charCodeAt(0)), 1);
+
+/** The spec of a cell's capture number `index`: the same one however many are run, in whatever order. */
+export function specOf(cell: Cell, seed: number, index: number): CaptureSpec {
+  return { ...cell.spec, seed: mixSeed(seed, seedOf(cell.name), index) };
+}

@@ -2,9 +2,8 @@ import { type EngineEstimate } from '../../shared/estimate.ts';
 import { Settings } from '../../shared/settings.ts';
 import { estimateDensity } from '../../server/engine/estimate.ts';
 import { simulateCapture } from '../support/simulator/capture.ts';
-import { mixSeed } from '../support/simulator/random.ts';
-import type { CaptureSpec, SimulatedCapture } from '../support/simulator/spec.ts';
-import type { Cell } from './cells.ts';
+import type { SimulatedCapture } from '../support/simulator/spec.ts';
+import { specOf, type Cell } from './cells.ts';
 
 /** What the engine made of one simulated capture, held against what is true. */
 export interface Trial {
@@ -29,13 +28,6 @@ export interface Trial {
 
 /** A spur is told right when it stands within this many RBW of a true one. */
 const NEAR_IN_RBW = 4;
-
-const seedOf = (name: string) => [...name].reduce((hash, letter) => mixSeed(hash, letter.charCodeAt(0)), 1);
-
-/** The spec of a cell's capture number `index`: the same one however many are run, in whatever order. */
-export function specOf(cell: Cell, seed: number, index: number): CaptureSpec {
-  return { ...cell.spec, seed: mixSeed(seed, seedOf(cell.name), index) };
-}
 
 /** Simulates a cell's capture number `index`, has the engine estimate it, and judges the estimate. */
 export function runTrial(cell: Cell, seed: number, index: number): Trial {
