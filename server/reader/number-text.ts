@@ -1,22 +1,22 @@
 export type DecimalMark = '.' | ',';
 
 /** A cell of a table: a number with the unit glued to it, a sign of a missing value, or other text. */
-export type Cell =
-  | { kind: 'number'; value: number; unit: string }
-  | { kind: 'missing' }
-  | { kind: 'text' };
+export type Cell = { kind: 'number'; value: number; unit: string } | { kind: 'missing' } | { kind: 'text' };
 
 const MISSING_CELL: Cell = { kind: 'missing' };
 const TEXT_CELL: Cell = { kind: 'text' };
 
-const UNIT = "([A-Za-zµμ°%Ω√²/'\"][\\wµμ°%Ω√²/()·*]*)?";
-const WITH_POINT = new RegExp(`^([+-]?(?:\\d+\\.?\\d*|\\.\\d+)(?:[eE][+-]?\\d{1,4})?)\\s*${UNIT}$`);
-const WITH_COMMA = new RegExp(`^([+-]?(?:\\d+,?\\d*|,\\d+)(?:[eE][+-]?\\d{1,4})?)\\s*${UNIT}$`);
-const MISSING = /^(?:[-–—*.?\s]*|[+-]?(?:nan|1\.#qnan|1\.#inf|inf|infinity)|n\/?a|#n\/a|null|none|nil|void|undef(?:ined)?|invalid|over(?:load|flow|range)?|under(?:flow|range)?|missing|empty)$/i;
+const UNIT = '([A-Za-zµμ°%Ω√²/\'"][\\wµμ°%Ω√²/()·*]*)?';
+const WITH_POINT = new RegExp(`^([+-]?(?:\\d+\\.?\\d*|\\.\\d+))(?:[eE]([+-]?\\d{1,4}))?\\s*${UNIT}$`);
+const WITH_COMMA = new RegExp(`^([+-]?(?:\\d+,?\\d*|,\\d+))(?:[eE]([+-]?\\d{1,4}))?\\s*${UNIT}$`);
+const MISSING =
+  /^(?:[-–—*.?\s]*|[+-]?(?:nan|1\.#qnan|1\.#inf|inf|infinity)|n\/?a|#n\/a|null|none|nil|void|undef(?:ined)?|invalid|over(?:load|flow|range)?|under(?:flow|range)?|missing|empty)$/i;
 
 /** U+2212 and its look-alikes before a digit become `-`; no-break and thin blanks become blanks. */
 export function plainSigns(text: string): string {
-  return text.replace(/[\u2212\uff0d\u2010\u2011\u2012](?=[\d.,])/g, '-').replace(/[\u00a0\u2007\u2009\u202f]/g, ' ');
+  return text
+    .replace(/[\u2212\uff0d\u2010\u2011\u2012](?=[\d.,])/g, '-')
+    .replace(/[\u00a0\u2007\u2009\u202f]/g, ' ');
 }
 
 /** A cell that says that no value is there: NaN, `---`, blank, overload. */
@@ -27,14 +27,16 @@ export function isMissing(text: string): boolean {
 /**
  * One cell of a table.
  * @param text the cell without surrounding blanks or quotes
+ * @param shift power of ten that the number is multiplied by, exactly: 6 for MHz to Hz
  * @returns a finite number with its unit (`''` where none), `missing` for NaN, `---`, infinities and `1e400`, or `text`
  */
-export function parseCell(text: string, decimalMark: DecimalMark): Cell {
+export function parseCell(text: string, decimalMark: DecimalMark, shift = 0): Cell {
   const plain = plainSigns(text).trim();
   const match = (decimalMark === '.' ? WITH_POINT : WITH_COMMA).exec(plain);
   if (match) {
-    const value = Number(decimalMark === '.' ? match[1] : match[1].replace(',', '.'));
-    return Number.isFinite(value) ? { kind: 'number', value, unit: match[2] ?? '' } : MISSING_CELL;
+    const digits = decimalMark === '.' ? match[1] : match[1].replace(',', '.');
+    const value = Number(`${digits}e${Number(match[2] ?? 0) + shift}`);
+    return Number.isFinite(value) ? { kind: 'number', value, unit: match[3] ?? '' } : MISSING_CELL;
   }
   return isMissing(plain) ? MISSING_CELL : TEXT_CELL;
 }

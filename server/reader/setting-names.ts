@@ -47,7 +47,10 @@ const KEYS: [KeyMeaning, string][] = [
     `filter shape | rbw shape | rbw filter shape | shape | filterform | forme du filtre | forma del filtro | fft window | fft window type
     | window type | fft fenster | fenêtre fft | ventana fft`,
   ],
-  ['rbwFilter', 'rbw filter | rbw filter type | filter type | filter | resolution filter | filtertyp | rbw-filter | type de filtre | tipo de filtro'],
+  [
+    'rbwFilter',
+    'rbw filter | rbw filter type | filter type | filter | resolution filter | filtertyp | rbw-filter | type de filtre | tipo de filtro',
+  ],
   [
     'noiseBandwidth',
     'noise bandwidth | noise bw | enbw | nbw | equivalent noise bandwidth | equivalent noise bw | effective noise bandwidth | rauschbandbreite | bande équivalente de bruit | ancho de banda de ruido',
@@ -123,7 +126,10 @@ const KEYS: [KeyMeaning, string][] = [
     `level offset | ref level offset | reference level offset | ref lvl offset | ref offset | rl offset | amplitude offset | amptd offset | offset level | offset
     | pegeloffset | referenzpegel-offset | décalage de niveau | desplazamiento de nivel`,
   ],
-  ['transducer', 'transducer | transducer factor | correction | corrections | amplitude correction | antenna factor | correction factor | transducer set'],
+  [
+    'transducer',
+    'transducer | transducer factor | correction | corrections | amplitude correction | antenna factor | correction factor | transducer set',
+  ],
   ['levelUncertaintyDb', 'level uncertainty | amplitude uncertainty | absolute level uncertainty'],
   ['ownNoiseDbmPerHz', 'own noise | own noise density | analyser noise density | own noise dbm per hz'],
   ['ownNoiseUncertaintyDb', 'own noise uncertainty'],
@@ -131,7 +137,10 @@ const KEYS: [KeyMeaning, string][] = [
     'impedanceOhm',
     'impedance | input impedance | z | system impedance | load impedance | ref impedance | reference impedance | impedanz | eingangsimpedanz | wellenwiderstand | impédance | impédance d entrée | impedancia | impedancia de entrada',
   ],
-  ['sourceTemperatureK', 'source temperature | source temp | noise source temperature | temperature of source'],
+  [
+    'sourceTemperatureK',
+    'source temperature | source temp | noise source temperature | temperature of source',
+  ],
   [
     'startHz',
     `start | start freq | start frequency | freq start | frequency start | f start | fstart | begin frequency | first frequency | x start | xstart | from | start f | lower frequency
@@ -164,7 +173,10 @@ const KEYS: [KeyMeaning, string][] = [
     | measurement points | messpunkte | anzahl messpunkte | anzahl punkte | punkte | anzahl der messpunkte | sweeppunkte | sweep-punkte
     | nombre de points | points de mesure | puntos | número de puntos | numero de puntos | puntos de barrido | puntos de medida`,
   ],
-  ['takenAt', 'date and time | date time | datetime | timestamp | time stamp | date/time | acquired | acquired at | recorded | taken at | measurement time | datum und zeit | datum/uhrzeit | date et heure | fecha y hora'],
+  [
+    'takenAt',
+    'date and time | date time | datetime | timestamp | time stamp | date/time | acquired | acquired at | recorded | taken at | measurement time | datum und zeit | datum/uhrzeit | date et heure | fecha y hora',
+  ],
   ['date', 'date | datum | fecha | measurement date'],
   ['time', 'time | uhrzeit | zeit | heure | hora | time of day'],
   [
@@ -181,7 +193,10 @@ const KEYS: [KeyMeaning, string][] = [
   ],
   ['traceMode', 'trace mode | trace type | trace state | mode de trace | modo de traza | trace-modus'],
   ['traceName', 'trace | trace name | trace label | messkurve | courbe | traza'],
-  ['sweepType', 'sweep type | sweep mode | sweep spacing | x scale | x-scale | x axis scale | frequency scale'],
+  [
+    'sweepType',
+    'sweep type | sweep mode | sweep spacing | x scale | x-scale | x axis scale | frequency scale',
+  ],
   [
     'ignored',
     'trace count | window | frequency | fft width | rbw mode | rbw auto | vbw mode | vbw auto | vbw/rbw | vbw rbw ratio | rbw/vbw ratio | span/rbw | sweep time mode | swt auto | reference level position | detector mode auto | trace number | display window',
@@ -189,7 +204,9 @@ const KEYS: [KeyMeaning, string][] = [
 ];
 
 const MEANINGS = new Map<string, KeyMeaning>(
-  KEYS.flatMap(([meaning, names]) => names.split('|').map((name): [string, KeyMeaning] => [bareKey(name), meaning])),
+  KEYS.flatMap(([meaning, names]) =>
+    names.split('|').map((name): [string, KeyMeaning] => [bareKey(name), meaning]),
+  ),
 );
 
 /** What a key means, or null for one that names no setting. Case, blanks, dots, underscores and accents don’t matter. */

@@ -28,14 +28,18 @@ const FREQUENCY_SHORT = new Map([
   ['G', 1e9],
 ]);
 
-const MODES = /[\s,;(]*\b(?:auto|automatic|man|manual|fixed|coupled|uncoupled|automatisch|manuell)\b\.?\)?\s*$/i;
+const MODES =
+  /[\s,;(]*\b(?:auto|automatic|man|manual|fixed|coupled|uncoupled|automatisch|manuell)\b\.?\)?\s*$/i;
 
 /** `10 kHz (auto)` → number 10, unit `kHz`; null where there is no single number. */
 export function splitQuantity(
   text: string,
   decimalMark: DecimalMark | null,
 ): { value: number; unit: string } | null {
-  const plain = plainSigns(text).replace(MODES, '').replace(/^[~≈=]\s*/, '').trim();
+  const plain = plainSigns(text)
+    .replace(MODES, '')
+    .replace(/^[~≈=]\s*/, '')
+    .trim();
   const match = /^([+-]?[\d.,'’\s]*\d[.,]?(?:[eE][+-]?\d{1,4})?)\s*(.*)$/.exec(plain);
   if (!match) return null;
   const value = parseLooseNumber(match[1], decimalMark);
@@ -68,7 +72,9 @@ const seconds = quantity((unit) => (unit === '' ? 1 : timeUnit(unit)));
 const decibel = quantity((unit) => (/^(?:dB)?$/i.test(unit) ? 1 : null));
 const density = quantity((unit) => (/^(?:dBm\s*\/\s*Hz|dBm\s*per\s*Hz)?$/i.test(unit) ? 1 : null));
 const ratio = quantity((unit) => (unit === '' ? 1 : unit === '%' ? 0.01 : null));
-const ohm = quantity((unit) => (/^(?:ohms?|Ω|Ω|Ohm)?$/i.test(unit) ? 1 : /^k(?:ohm|Ω|Ω)$/i.test(unit) ? 1e3 : null));
+const ohm = quantity((unit) =>
+  /^(?:ohms?|Ω|Ω|Ohm)?$/i.test(unit) ? 1 : /^k(?:ohm|Ω|Ω)$/i.test(unit) ? 1e3 : null,
+);
 
 const kelvin: Reader = (text, { decimalMark = null, unit = '' }) => {
   const parts = splitQuantity(text, decimalMark);
@@ -153,7 +159,6 @@ const NAMES = new Map<string, SettingName>(
   SettingValues.keyof().options.map((name): [string, SettingName] => [name.toLowerCase(), name]),
 );
 
-
 function checked(name: SettingName, value: SettingValue | null, text: string): ParsedSetting {
   const { wants } = READERS[name];
   if (value !== null) {
@@ -202,7 +207,9 @@ function typedOrText(name: SettingName, given: unknown): ParsedSetting {
 }
 
 /** Settings from checked values: an unknown name can't get in, whatever it is called. */
-export function toSettings(values: ReadonlyMap<SettingName, { value: SettingValue; origin: Origin }>): Settings {
+export function toSettings(
+  values: ReadonlyMap<SettingName, { value: SettingValue; origin: Origin }>,
+): Settings {
   return Settings.parse(Object.fromEntries(values));
 }
 

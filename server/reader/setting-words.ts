@@ -21,7 +21,10 @@ export function bareKey(text: string): string {
 }
 
 const DETECTORS: [DetectorName, string][] = [
-  ['sample', 'sample sampled smp smpl samp sa abtast abtastwert stichprobe echantillon echantillonnage muestra muestreo'],
+  [
+    'sample',
+    'sample sampled smp smpl samp sa abtast abtastwert stichprobe echantillon echantillonnage muestra muestreo',
+  ],
   [
     'average',
     'average avg av ave rms avgrms rmsavg averagerms rmsaverage poweraverage poweravg pwravg averagepower avgpower avgpwr powerrms rmspower mean meanpower mittelwert effektivwert effektiv moyenne moyennerms valeurefficace efficace promedio media valoreficaz eficaz',
@@ -42,7 +45,9 @@ const DETECTORS: [DetectorName, string][] = [
 ];
 
 const DETECTOR_WORDS = new Map(
-  DETECTORS.flatMap(([detector, words]) => words.split(' ').map((word): [string, DetectorName] => [word, detector])),
+  DETECTORS.flatMap(([detector, words]) =>
+    words.split(' ').map((word): [string, DetectorName] => [word, detector]),
+  ),
 );
 
 /** The detector that a text names, or null. */
@@ -56,8 +61,14 @@ export function detectorFromText(text: string): DetectorName | null {
 }
 
 const SCALE_WORDS: [ScaleName, string][] = [
-  ['log', 'log logarithm logarithmic logarithmisch logarithmique logaritmica logaritmico video vid db dbm logpwr logpower linlog logmag'],
-  ['power', 'power pwr pow rms leistung leistungsmittelung puissance potencia watt watts linpwr linpower effektivwert effektiv efficace eficaz quadratic'],
+  [
+    'log',
+    'log logarithm logarithmic logarithmisch logarithmique logaritmica logaritmico video vid db dbm logpwr logpower linlog logmag',
+  ],
+  [
+    'power',
+    'power pwr pow rms leistung leistungsmittelung puissance potencia watt watts linpwr linpower effektivwert effektiv efficace eficaz quadratic',
+  ],
   ['voltage', 'voltage volt volts v spannung tension voltaje linv linvoltage amplitude magnitude'],
 ];
 
@@ -81,7 +92,10 @@ export function scaleFromText(text: string): ScaleName | null {
     .filter((word) => word !== '');
   const named = words.map((word) => SCALE_OF_WORD.get(word));
   const unknown = words.filter(
-    (word, index) => named[index] === undefined && !SCALE_FILLERS.has(word) && !/^lin(?:ear)?$|^lineal$|^lineaire$/.test(word),
+    (word, index) =>
+      named[index] === undefined &&
+      !SCALE_FILLERS.has(word) &&
+      !/^lin(?:ear)?$|^lineal$|^lineaire$/.test(word),
   );
   if (unknown.length > 0) return null;
   const linear = words.some((word) => /^lin/.test(word) && SCALE_OF_WORD.get(word) === undefined);
@@ -102,7 +116,11 @@ export function rbwKindFromText(text: string): KindName | null {
   const bare = bareKey(plain);
   if (/^(?:normal|halfpower|normal3db)$/.test(bare)) return '3dB';
   if (/^(?:emi|cispr|cispr16|emiquasipeak|halfvoltage)$/.test(bare)) return '6dB';
-  if (/^(?:enbw|noise|noisebandwidth|noisebw|nbw|equivalentnoise(?:bandwidth|bw)?|noiseequivalent(?:bandwidth)?|rausch(?:bandbreite)?|bruit|ruido)$/.test(bare))
+  if (
+    /^(?:enbw|noise|noisebandwidth|noisebw|nbw|equivalentnoise(?:bandwidth|bw)?|noiseequivalent(?:bandwidth)?|rausch(?:bandbreite)?|bruit|ruido)$/.test(
+      bare,
+    )
+  )
     return 'noise';
   return null;
 }
@@ -138,11 +156,18 @@ export function filterShapeFromText(text: string): ShapeName | null {
   const bare = bareKey(plain).replace(/(?:window|fenster|filter|filtre|filtro|shape|type|shaped|form)+$/, '');
   const windowed = /window|fenster|fft|fenetre|ventana/.test(plain);
   const inner = bare.replace(/^fft(?:window)?/, '');
-  if (/^(?:near|digital|approx)?gau(?:ss|ssian|sian|ssien|ssiano|sss?formig|ssfilter)(?:[-\d]*d?b?)?$/.test(inner)) return 'gaussian';
+  if (
+    /^(?:near|digital|approx)?gau(?:ss|ssian|sian|ssien|ssiano|sss?formig|ssfilter)(?:[-\d]*d?b?)?$/.test(
+      inner,
+    )
+  )
+    return 'gaussian';
   if (/^(?:hann|hanning|vonhann)$/.test(inner)) return 'fftHann';
   if (/^hamming$/.test(inner)) return 'fftHamming';
   if (/^blackman$/.test(inner)) return 'fftBlackman';
-  if (/^(?:blackmanharris|bh|4termblackmanharris|blackmanharris4term|bh4|bh92|blackmanharris92db)$/.test(inner))
+  if (
+    /^(?:blackmanharris|bh|4termblackmanharris|blackmanharris4term|bh4|bh92|blackmanharris92db)$/.test(inner)
+  )
     return 'fftBlackmanHarris';
   if (/^(?:flattop|flattopp)$/.test(inner)) return windowed || /flat/.test(inner) ? 'fftFlatTop' : null;
   if (/^(?:uniform|boxcar|nowindow)$/.test(inner)) return 'fftRectangular';
@@ -151,8 +176,10 @@ export function filterShapeFromText(text: string): ShapeName | null {
   return null;
 }
 
-const ON = /^(?:on|yes|true|1|enabled?|active|ein|an|ja|aktiv|wahr|oui|marche|actif|active|vrai|si|activado|encendido|verdadero)$/;
-const OFF = /^(?:off|no|false|0|disabled?|inactive|none|aus|nein|inaktiv|falsch|non|arret|inactif|faux|desactivado|apagado|falso|bypass(?:ed)?|out)$/;
+const ON =
+  /^(?:on|yes|true|1|enabled?|active|ein|an|ja|aktiv|wahr|oui|marche|actif|active|vrai|si|activado|encendido|verdadero)$/;
+const OFF =
+  /^(?:off|no|false|0|disabled?|inactive|none|aus|nein|inaktiv|falsch|non|arret|inactif|faux|desactivado|apagado|falso|bypass(?:ed)?|out)$/;
 
 /** On or off in the usual words, or null. */
 export function switchFromText(text: string): boolean | null {

@@ -21,8 +21,18 @@ const MAGIC: Magic[] = [
   { bytes: text('WEBP'), at: 8, what: 'a WebP image', code: 'image', advice: EXPORT },
   { bytes: text('%PDF'), what: 'a PDF document', code: 'document', advice: EXPORT },
   { bytes: text('{\\rtf'), what: 'a word-processor document', code: 'document', advice: EXPORT },
-  { bytes: [0x1f, 0x8b], what: 'a gzip archive', code: 'archive', advice: 'Unpack it and drop the CSV inside.' },
-  { bytes: text('BZh'), what: 'a bzip2 archive', code: 'archive', advice: 'Unpack it and drop the CSV inside.' },
+  {
+    bytes: [0x1f, 0x8b],
+    what: 'a gzip archive',
+    code: 'archive',
+    advice: 'Unpack it and drop the CSV inside.',
+  },
+  {
+    bytes: text('BZh'),
+    what: 'a bzip2 archive',
+    code: 'archive',
+    advice: 'Unpack it and drop the CSV inside.',
+  },
   {
     bytes: [0xfd, 0x37, 0x7a, 0x58, 0x5a],
     what: 'an xz archive',
@@ -41,7 +51,12 @@ const MAGIC: Magic[] = [
     code: 'archive',
     advice: 'Unpack it and drop the CSV inside.',
   },
-  { bytes: text('Rar!'), what: 'a RAR archive', code: 'archive', advice: 'Unpack it and drop the CSV inside.' },
+  {
+    bytes: text('Rar!'),
+    what: 'a RAR archive',
+    code: 'archive',
+    advice: 'Unpack it and drop the CSV inside.',
+  },
   {
     bytes: text('ustar'),
     at: 257,
@@ -93,7 +108,11 @@ function binaryShare(head: Uint8Array): number {
  */
 export function refuseForeignBytes(head: Uint8Array, wide: boolean): void {
   if (head.length === 0)
-    refuse('empty', 'This file is empty: 0 bytes.', 'Export the trace again and check its size before you drop it.');
+    refuse(
+      'empty',
+      'This file is empty: 0 bytes.',
+      'Export the trace again and check its size before you drop it.',
+    );
   if (wide) return;
   const magic = MAGIC.find((candidate) => startsWith(head, candidate));
   if (magic) refuse(magic.code, `This is ${magic.what}, not a trace export.`, magic.advice);
