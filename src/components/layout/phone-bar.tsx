@@ -10,7 +10,7 @@ export function PhoneBar() {
   const [open, setOpen] = useState(false);
   const several = session.labs.length > 1;
   return (
-    <div className="border-b border-rule px-4 phone:hidden print:hidden">
+    <header className="border-b border-rule px-4 phone:hidden print:hidden">
       <div className="flex min-h-12 items-center gap-2.5">
         <span className="text-[15px] font-semibold">Perhertz</span>
         <span aria-hidden="true" className="h-4 border-l border-ink" />
@@ -35,6 +35,6 @@ export function PhoneBar() {
           </div>
         </div>
       )}
-    </div>
+    </header>
   );
 }

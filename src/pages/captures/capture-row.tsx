@@ -1,37 +1,32 @@
-import type { Row } from '@tanstack/react-table';
+import { FlexRender, type Row } from '@tanstack/react-table';
 import clsx from 'clsx';
-import type { ReactNode } from 'react';
+import { memo, type ReactNode } from 'react';
 import { Progress } from '../../components/ui/progress.tsx';
 import { countWords } from '../../lib/format.ts';
-import { features, padding, RESULT_COLUMNS, RIGHT, ROW_HEIGHT } from './columns.tsx';
+import { type features, padding, RESULT_COLUMNS, RIGHT, ROW_HEIGHT } from './columns.tsx';
 import type { TableRow } from './rows.ts';
 
-type TheRow = Row<typeof features, TableRow>;
-type Cell = ReturnType<TheRow['getAllCells']>[number];
-
 interface CaptureRowProps {
-  row: TheRow;
-  flex: (cell: Cell) => ReactNode;
+  row: Row<typeof features, TableRow>;
   ids: string[];
   phone: boolean;
   rowNumber: number | undefined;
   selected: boolean;
   current: boolean;
-  onSelect: (checked: boolean) => void;
-  onFocus: () => void;
+  onSelect: (ids: readonly string[], selected: boolean) => void;
+  onCurrent: (id: string) => void;
 }
 
 /** One capture; the whole row opens it. */
-export function CaptureRow({
+export const CaptureRow = memo(function CaptureRow({
   row,
-  flex,
   ids,
   phone,
   rowNumber,
   selected,
   current,
   onSelect,
-  onFocus,
+  onCurrent,
 }: CaptureRowProps) {
   const { capture } = row.original;
   const sentence = rowSentence(row.original);
@@ -40,7 +35,7 @@ export function CaptureRow({
     <tr
       aria-rowindex={rowNumber}
       aria-current={current || undefined}
-      onFocus={onFocus}
+      onFocus={() => onCurrent(capture.id)}
       style={{ height: ROW_HEIGHT }}
       className={clsx(
         'relative border-b border-rule2 transition-colors duration-[120ms] hover:bg-hover has-[a:focus-visible]:outline-2 has-[a:focus-visible]:-outline-offset-2 has-[a:focus-visible]:outline-est',
@@ -48,7 +43,11 @@ export function CaptureRow({
       )}
     >
       <td className={clsx('relative z-[1]', stuck, 'left-0')}>
-        <Tick label={`Select ${capture.name}`} checked={selected} onChange={onSelect} />
+        <Tick
+          label={`Select ${capture.name}`}
+          checked={selected}
+          onChange={(checked) => onSelect([capture.id], checked)}
+        />
       </td>
       {row.getAllCells().map((cell) => {
         const { id } = cell.column;
@@ -73,13 +72,13 @@ export function CaptureRow({
               id === 'capture' && clsx('pr-2', stuck, phone && 'left-9 border-r border-r-rule'),
             )}
           >
-            {flex(cell)}
+            <FlexRender cell={cell} />
           </td>
         );
       })}
     </tr>
   );
-}
+});
 
 /** What a row without a result says instead: how far the reading is, or why it stopped. */
 function rowSentence({ capture: { state, progress, problem } }: TableRow): ReactNode {

@@ -23,13 +23,16 @@ import { UploadTarget, useUploadTarget } from './upload-target.tsx';
 import { CAPTURES_KEYS, useRowKeys } from './use-row-keys.ts';
 import { useRows } from './use-rows.ts';
 
+const NO_CAMPAIGNS: readonly Campaign[] = [];
+
 /** The lab's captures: drop files anywhere, find, order, select. */
 export function CapturesPage() {
   const { lab } = useLab();
   const filtering = useFiltering();
   const campaigns = useCampaigns(lab.id);
-  const rows = useRows(lab.id, filtering, campaigns.data);
-  const target = useUploadTarget(lab.id, campaigns.data ?? [], filtering.address.campaign);
+  const campaignList = campaigns.data ?? NO_CAMPAIGNS;
+  const rows = useRows(lab.id, filtering, campaignList);
+  const target = useUploadTarget(lab.id, campaignList, filtering.address.campaign);
   const search = useRef<HTMLInputElement>(null);
   const { moves, note } = useMovedNote();
   const drop = useDropzone({
@@ -81,7 +84,7 @@ export function CapturesPage() {
         </p>
         <UploadTarget
           target={target}
-          campaigns={campaigns.data ?? []}
+          campaigns={campaignList}
           onNew={() => askForCampaign(({ id }) => target.choose(id))}
         />
       </div>
@@ -99,7 +102,7 @@ export function CapturesPage() {
         <>
           <FilterSentence
             filtering={filtering}
-            campaigns={campaigns.data ?? []}
+            campaigns={campaignList}
             people={rows.people}
             searchRef={search}
             total={rows.list.isPlaceholderData ? null : rows.total}
@@ -133,7 +136,7 @@ export function CapturesPage() {
       )}
       <SelectionBar
         selected={selected}
-        campaigns={campaigns.data ?? []}
+        campaigns={campaignList}
         onClear={keys.clear}
         onNew={askForCampaign}
         moves={moves}

@@ -6,8 +6,10 @@ import { usePhone } from '../../lib/use-media.ts';
 import { CaptureRow, Tick } from './capture-row.tsx';
 import { columnsFor, features, GROUP_HEIGHT, padding, RIGHT, ROW_HEIGHT, widthOf } from './columns.tsx';
 import { useRowWindow } from './use-row-window.ts';
-import type { Group, Item } from './rows.ts';
+import type { Group, Item, TableRow } from './rows.ts';
 import { WhiskerAxis, type Axis } from './whisker.tsx';
+
+const getRowId = ({ capture }: TableRow) => capture.id;
 
 interface Props {
   items: readonly Item[];
@@ -39,11 +41,11 @@ export function CapturesTable({
   const phone = usePhone();
   const columns = columnsFor(phone, grouped);
   const data = useMemo(() => items.flatMap((item) => (item.kind === 'row' ? [item.row] : [])), [items]);
-  const table = useTable({ features, columns, data, getRowId: ({ capture }) => capture.id });
+  const table = useTable({ features, columns, data, getRowId });
   const rows = table.getRowModel().rows;
   const body = useRef<HTMLTableSectionElement>(null);
   const window_ = useRowWindow(items, body, currentId);
-  const ids = columns.map(({ id }) => id ?? '');
+  const ids = useMemo(() => columns.map(({ id }) => id ?? ''), [columns]);
   const allSelected = rows.length > 0 && rows.every(({ id }) => selected.has(id));
   const someSelected = rows.some(({ id }) => selected.has(id));
 
@@ -127,14 +129,13 @@ export function CapturesTable({
                 <CaptureRow
                   key={item.row.capture.id}
                   row={rows[item.rowIndex]}
-                  flex={(cell) => <table.FlexRender cell={cell} />}
                   ids={ids}
                   phone={phone}
                   rowNumber={window_.virtual ? window_.first + offset + 2 : undefined}
                   selected={selected.has(item.row.capture.id)}
                   current={currentId === item.row.capture.id}
-                  onSelect={(checked) => onSelect([item.row.capture.id], checked)}
-                  onFocus={() => onCurrent(item.row.capture.id)}
+                  onSelect={onSelect}
+                  onCurrent={onCurrent}
                 />
               ),
             )}

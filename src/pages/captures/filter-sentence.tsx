@@ -1,4 +1,4 @@
-import { useEffect, useState, type RefObject } from 'react';
+import { memo, useEffect, useState, type RefObject } from 'react';
 import type { Campaign, CaptureSort, Person } from '../../../shared/capture.ts';
 import { Kbd } from '../../components/ui/kbd.tsx';
 import { Select, type Option } from '../../components/ui/listbox.tsx';
@@ -53,7 +53,13 @@ interface Props {
 }
 
 /** Search, filters as a sentence, order. */
-export function FilterSentence({ filtering, campaigns, people, searchRef, total }: Props) {
+export const FilterSentence = memo(function FilterSentence({
+  filtering,
+  campaigns,
+  people,
+  searchRef,
+  total,
+}: Props) {
   const { address, change } = filtering;
   const set = (name: 'state' | 'verdict' | 'campaign' | 'person' | 'since') => (value: string) =>
     change({ [name]: value === ANY ? undefined : value });
@@ -148,7 +154,7 @@ export function FilterSentence({ filtering, campaigns, people, searchRef, total 
       </div>
     </div>
   );
-}
+});
 
 /** A choice from the address that isn't among those known here, so that the button still says something. */
 function unknown(id: string | undefined, known: readonly { id: string }[], label: string): Option[] {

@@ -1,4 +1,5 @@
 import { useQueries } from '@tanstack/react-query';
+import { memo, type ReactNode } from 'react';
 import { Link } from 'react-router-dom';
 import type { Capture } from '../../../shared/capture.ts';
 import { captureOptions } from '../../api/captures.ts';
@@ -36,7 +37,7 @@ function useTracked(labId: string): Tracked[] {
 const isReady = ({ upload, capture }: Tracked) => upload.phase === 'stored' && capture?.state === 'ready';
 
 /** What happens to the files that were dropped: sending, reading, waiting for a person, refused, done. */
-export function UploadPanel({ labId }: { labId: string }) {
+export const UploadPanel = memo(function UploadPanel({ labId }: { labId: string }) {
   const tracked = useTracked(labId);
   if (tracked.length === 0) return null;
   const ready = tracked.filter(isReady);
@@ -70,7 +71,7 @@ export function UploadPanel({ labId }: { labId: string }) {
       )}
     </section>
   );
-}
+});
 
 function summary(tracked: readonly Tracked[], ready: number): string {
   const count = (phase: Upload['phase']) => tracked.filter(({ upload }) => upload.phase === phase).length;
@@ -143,7 +144,7 @@ interface Look {
   progress: string;
   share: number | null;
   meaning: string;
-  action: React.ReactNode;
+  action: ReactNode;
   tone?: string;
   waiting?: boolean;
   bad?: boolean;

@@ -5,13 +5,11 @@ import { captureListOptions } from '../../api/captures.ts';
 import type { Filtering } from './filters.ts';
 import { toItems } from './rows.ts';
 
-const NO_CAMPAIGNS: readonly Campaign[] = [];
-
 /** The captures under the present filters, laid out in groups; the previous ones stay while new filters load. */
 export function useRows(
   labId: string,
   { address, query, filtered }: Filtering,
-  campaigns: readonly Campaign[] = NO_CAMPAIGNS,
+  campaigns: readonly Campaign[],
 ) {
   const list = useInfiniteQuery({ ...captureListOptions(labId, query), placeholderData: keepPreviousData });
   const captures = useMemo(() => list.data?.pages.flatMap(({ items }) => items) ?? [], [list.data]);

@@ -106,7 +106,7 @@ function Pitch() {
   const health = useHealth();
   const trace = useMemo(() => simulateTrace(1), []);
   return (
-    <div className="flex flex-col px-16 pt-10 pb-10 max-phone:px-5 max-phone:pt-6 max-phone:pb-6 max-wide:pb-8">
+    <header className="flex flex-col px-16 pt-10 pb-10 max-phone:px-5 max-phone:pt-6 max-phone:pb-6 max-wide:pb-8">
       <p className="w-32 border-b border-ink pb-1 text-[18px] leading-6 font-semibold">Perhertz</p>
       <div className="my-auto max-w-[840px] py-8 max-wide:mx-auto max-phone:py-4 wide:w-full wide:pl-6">
         <p className="max-w-[460px] text-[22px] leading-[30px] font-medium tracking-[-0.01em] max-phone:text-[19px] max-phone:leading-[26px]">
@@ -127,7 +127,7 @@ function Pitch() {
         {health.data !== undefined && `Engine ${health.data.engineVersion}`}
         {health.isError && 'The server can’t be reached at the moment.'}
       </p>
-    </div>
+    </header>
   );
 }
 
