@@ -6,17 +6,25 @@ import type { Stage } from './point-law.ts';
 
 type Input = LedgerEntry['inputs'][number];
 
-const settingInput = ({ settings }: EffectiveSettings, setting: SettingName, name: string, value: string): Input => ({
+const settingInput = (
+  { settings }: EffectiveSettings,
+  setting: SettingName,
+  name: string,
+  value: string,
+): Input => ({
   name,
   value,
   origin: originWords(settings, setting),
 });
 
 /** The reading: the mean of the kept points. */
-export function meanEntry(
-  effective: EffectiveSettings,
-  mean: { levelDbm: number; usedPoints: number; spursLeftOut: number; effectivePoints: number; unit: 'dBm' | 'dBm/Hz' },
-): LedgerEntry {
+export function meanEntry(mean: {
+  levelDbm: number;
+  usedPoints: number;
+  spursLeftOut: number;
+  effectivePoints: number;
+  unit: 'dBm' | 'dBm/Hz';
+}): LedgerEntry {
   const out = mean.spursLeftOut > 0 ? `; ${plural(mean.spursLeftOut, 'spur')} left out` : '';
   return {
     id: 'mean',
@@ -28,13 +36,23 @@ export function meanEntry(
     formula: `10 lg[(1/M) Σ 10^(Lᵢ/10)] = ${fixed(mean.levelDbm, 2)} ${mean.unit}`,
     inputs: [
       { name: 'M', value: String(mean.usedPoints), origin: 'points not left out' },
-      { name: 'independent', value: significant(mean.effectivePoints, 3), origin: 'autocorrelation of the points' },
+      {
+        name: 'independent',
+        value: significant(mean.effectivePoints, 3),
+        origin: 'autocorrelation of the points',
+      },
     ],
     source: 'Method: mean in linear power; JCGM 100:2008, 4.2',
   };
 }
 
-const SCALE_WORDS = { power: 'power', log: 'log', voltage: 'voltage', largest: 'largest', smallest: 'smallest' };
+const SCALE_WORDS = {
+  power: 'power',
+  log: 'log',
+  voltage: 'voltage',
+  largest: 'largest',
+  smallest: 'smallest',
+};
 
 /** What a chain of stages averages, in words: `20 sweeps on the log scale`. */
 export function stagesWords(stages: Stage[], sweeps: number | null): string {
@@ -123,14 +141,19 @@ export function bandwidthEntry(
       measured
         ? settingInput(effective, 'bandwidthRatio', 'r', fixed(bandwidth.ratio, 4))
         : settingInput(effective, 'filterShape', 'r', fixed(bandwidth.ratio, 4)),
-      ...(measured || values.rbwKind === undefined ? [] : [settingInput(effective, 'rbwKind', 'kind', values.rbwKind)]),
+      ...(measured || values.rbwKind === undefined
+        ? []
+        : [settingInput(effective, 'rbwKind', 'kind', values.rbwKind)]),
     ],
     source: measured ? 'measured ratio' : 'Method: noise bandwidth by filter shape',
   };
 }
 
 /** The subtraction of the analyser's own noise in linear power. */
-export function ownNoiseEntry(effective: EffectiveSettings, ownNoise: { correctionDb: number; marginDb: number }): LedgerEntry {
+export function ownNoiseEntry(
+  effective: EffectiveSettings,
+  ownNoise: { correctionDb: number; marginDb: number },
+): LedgerEntry {
   const density = effective.values.ownNoiseDbmPerHz ?? 0;
   return {
     id: 'ownNoise',
@@ -159,7 +182,14 @@ export function levelEntry(effective: EffectiveSettings): LedgerEntry {
     kind: 'correction',
     budgetIds: ['level'],
     formula: 'no correction stated',
-    inputs: [settingInput(effective, 'levelUncertaintyDb', 'u', u === undefined ? 'not stated' : `${fixed(u, 2)} dB`)],
+    inputs: [
+      settingInput(
+        effective,
+        'levelUncertaintyDb',
+        'u',
+        u === undefined ? 'not stated' : `${fixed(u, 2)} dB`,
+      ),
+    ],
     source: 'JCGM 100:2008, 4.3',
   };
 }

@@ -65,13 +65,13 @@ function floorSpread(relativeVariance: number, cells: number) {
  * Factor by which a one-pole video filter's tail lies above that of the law with the same effective number of values.
  *
  * Its weights fall off exponentially, so its skewness is 4/3 of that of equal weights. With z the normal quantile of the
- * probability: ln factor = (0.004 + 0.021·(1 - v))·√v·(z² - 1), fitted to simulated sweeps of 600,000 points with VBW/RBW
+ * probability: ln factor = (0.005 + 0.026·(1 - v))·√v·(z² - 1), an upper line over simulated sweeps of 600,000 points with VBW/RBW
  * from 0.03 to 3 on the power, log and voltage scales, at probabilities from 0.01 to 3·10⁻⁵.
  */
 export function videoTailFactor(relativeVariance: number, probability: number): number {
   const z = normalQuantile(1 - probability, 0, 1);
   const share = Math.max(0, 1 - relativeVariance);
-  return Math.exp((0.004 + 0.021 * share) * Math.sqrt(relativeVariance) * Math.max(0, z * z - 1));
+  return Math.exp((0.005 + 0.026 * share) * Math.sqrt(relativeVariance) * Math.max(0, z * z - 1));
 }
 
 /**

@@ -102,7 +102,7 @@ export function findSpurs(search: SpurSearch): SpursFound {
     quantile: 0.2,
     independentFraction,
   });
-  let thresholdPower = new Float64Array(0);
+  let thresholdPower: Float64Array = new Float64Array(0);
   let probability = 0;
   for (let pass = 0; pass < PASSES; pass++) {
     if (pass > 0) {

@@ -70,7 +70,12 @@ export function surveyTrace(input: SurveyInput): Survey | null {
         roundingDb: input.quantizationStepDb ?? undefined,
       })
     : { spurs: [], truncationBiasDb: 0 };
-  const { leftOut, exclusions, spanLeftOut } = applyExclusions(frequencyHz, search.spurs, input.exclusions, band);
+  const { leftOut, exclusions, spanLeftOut } = applyExclusions(
+    frequencyHz,
+    search.spurs,
+    input.exclusions,
+    band,
+  );
   const usedPoints = leftOut.length - leftOut.reduce((sum, flag) => sum + flag, 0);
   if (usedPoints === 0) return null;
 
@@ -88,7 +93,15 @@ export function surveyTrace(input: SurveyInput): Survey | null {
   };
   const flat = new Float64Array(powerMw.length).fill(meanPowerMw);
   const first = effectiveIndependentPoints(about(flat), leftOut, bounds);
-  const shape = floorShape({ powerMw, frequencyHz, mask: leftOut, law, spacingHz, filterWidthHz, tau: first.tau });
+  const shape = floorShape({
+    powerMw,
+    frequencyHz,
+    mask: leftOut,
+    law,
+    spacingHz,
+    filterWidthHz,
+    tau: first.tau,
+  });
   const independent =
     shape.model === 'level' ? first : effectiveIndependentPoints(about(shape.fittedPower), leftOut, bounds);
   const ripple = input.uniform ? findRipple(powerMw, frequencyHz, leftOut, filterWidthHz) : null;
@@ -115,10 +128,21 @@ export function surveyTrace(input: SurveyInput): Survey | null {
       ...shownFloor(frequencyHz, shape.fittedPower),
       tiltDb: shape.tiltDb,
       tiltUncertaintyDb: shape.tiltUncertaintyDb,
-      ...(ripple ? { ripple: { periodHz: ripple.periodHz, depthDb: ripple.depthDb, significance: ripple.significance } } : {}),
+      ...(ripple
+        ? {
+            ripple: { periodHz: ripple.periodHz, depthDb: ripple.depthDb, significance: ripple.significance },
+          }
+        : {}),
     },
     meanPowerMw,
-    relativeVariance: varianceAbout(powerMw, shape.fittedPower, leftOut, meanPowerMw, shape.parameters, independent),
+    relativeVariance: varianceAbout(
+      powerMw,
+      shape.fittedPower,
+      leftOut,
+      meanPowerMw,
+      shape.parameters,
+      independent,
+    ),
     independent,
     residuals: residualsOf(
       powerMw,

@@ -23,7 +23,12 @@ export function workingLaw(
   filterWidthHz: number,
 ): PointLaw {
   const guess = declared ?? pointLaw([]);
-  const { floorPower } = robustFloor(powerMw, frequencyHz, { law: guess, spacingHz, filterWidthHz, quantile: 0.3 });
+  const { floorPower } = robustFloor(powerMw, frequencyHz, {
+    law: guess,
+    spacingHz,
+    filterWidthHz,
+    quantile: 0.3,
+  });
   const stride = Math.max(1, Math.floor(powerMw.length / LARGEST_SAMPLE));
   const ratios = new Float64Array(Math.ceil(powerMw.length / stride));
   let count = 0;
@@ -35,7 +40,8 @@ export function workingLaw(
     }
   }
   if (count < 20) return guess;
-  const seenDb = 10 * Math.log10(sampleQuantile(ratios, count, MIDDLE) / sampleQuantile(ratios, count, LOWER));
+  const seenDb =
+    10 * Math.log10(sampleQuantile(ratios, count, MIDDLE) / sampleQuantile(ratios, count, LOWER));
   if (!(seenDb > 0)) return guess;
   const independent = count * Math.min(1, (stride * spacingHz) / filterWidthHz);
   const tolerance = Math.max(0.12, 4 / Math.sqrt(independent));
