@@ -75,9 +75,11 @@ function settingParts(before: Computation, after: Computation): string[] {
 
 function exclusionParts(before: Computation, after: Computation): string[] {
   const spans = ({ request }: Computation, action: 'exclude' | 'keep') =>
-    request.exclusions.filter((exclusion) => exclusion.action === action);
+    request.exclusions
+      .filter((exclusion) => exclusion.action === action)
+      .map(({ fromHz, toHz, reason }) => `${fromHz}–${toHz} ${reason ?? ''}`);
   const changed = (action: 'exclude' | 'keep') =>
-    JSON.stringify(spans(before, action)) !== JSON.stringify(spans(after, action));
+    spans(before, action).join() !== spans(after, action).join();
   const left = spans(after, 'exclude').length;
   const back = spans(after, 'keep').length;
   return [

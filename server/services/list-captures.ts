@@ -13,7 +13,7 @@ const ORDERS: Record<
   oldest: { key: null, direction: 'ASC', type: 'text' },
   name: { key: 'lower(capture.name)', direction: 'ASC', type: 'text' },
   density: { key: "coalesce(estimate.dbm_per_hz, 'Infinity'::float8)", direction: 'ASC', type: 'float8' },
-  state: { key: 'capture.state', direction: 'ASC', type: 'text' },
+  state: { key: "coalesce(capture.state, '')", direction: 'ASC', type: 'text' },
 };
 
 const Cursor = z.tuple([z.string(), z.union([z.string(), z.number(), z.null()]), z.uuid()]);
