@@ -158,11 +158,11 @@ export function fitLogLink(
     const score = new Array<number>(size).fill(0);
     for (let bin = 0; bin < basis.length; bin++) {
       const relative = bins.meanPower[bin] / Math.exp(legendre(coefficients, bins.at[bin])) - 1;
-      const bounded = Math.min(2, relative) * bins.count[bin];
-      for (let row = 0; row < size; row++) score[row] += bounded * basis[bin][row];
+      for (let row = 0; row < size; row++) score[row] += relative * bins.count[bin] * basis[bin][row];
     }
     const step = multiply(inverse, score);
-    step.forEach((change, row) => (coefficients[row] += change));
+    const damping = 1 / Math.max(1, ...step.map(Math.abs));
+    step.forEach((change, row) => (coefficients[row] += damping * change));
     if (step.every((change) => Math.abs(change) < 1e-9)) break;
   }
   const variance = Math.max(scatter.law.relativeVariance, binnedVariance(bins, coefficients, scatter.tau));
