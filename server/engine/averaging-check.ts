@@ -38,6 +38,9 @@ const SAME_LEVEL_DB = 0.1;
 const FEWEST_INDEPENDENT_POINTS = 12;
 const GOODNESS_BINS = 12;
 
+/** Voltage averaging is rare next to power and log averaging (common practice): prior odds, natural log. */
+const VOLTAGE_LOG_PRIOR = Math.log(0.1);
+
 interface Weighed extends Hypothesis {
   law: PointLaw;
   logLikelihood: number;
@@ -103,7 +106,7 @@ function weigh({ residuals, densityFor }: AveragingCheckInput, candidates: Candi
       predictedScatterDb: law.scatterDb,
       sigmas: Math.abs(sigmas),
       likelihood: 0,
-      logLikelihood: logLikelihood(residuals, law),
+      logLikelihood: logLikelihood(residuals, law) + (candidate.id === 'voltage' ? VOLTAGE_LOG_PRIOR : 0),
       fits: Math.abs(sigmas) <= SIGMAS_THAT_EXCLUDE,
       levelErrorDb: 0,
       densityDbmPerHz: densityFor(law.biasDb),
@@ -130,6 +133,7 @@ function decide(
     const rival = fitting.find(
       ({ id, law, logLikelihood }) =>
         id !== stated.id &&
+        id !== 'voltage' &&
         Math.abs(law.biasDb - stated.law.biasDb) > SAME_LEVEL_DB &&
         logLikelihood > stated.logLikelihood - 3,
     );

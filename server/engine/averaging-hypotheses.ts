@@ -3,6 +3,7 @@ import type { Scale } from '../../shared/settings.ts';
 import { averagingCheck, SIGMAS_THAT_EXCLUDE, type Candidate } from './averaging-check.ts';
 import { chainOf, type Chain, type ChainSettings } from './chain.ts';
 import { pointLaw, type PointLaw, type Stage } from './point-law.ts';
+import { peakValuesSeen } from './peak-values.ts';
 import { detectorValuesSeen, relativeScatterUncertainty, sweepsSeen, type Residuals } from './scatter.ts';
 
 const SCALES: Scale[] = ['power', 'log', 'voltage'];
@@ -45,6 +46,8 @@ export function resolveChain(
     sweepsFromScatter = { sweeps, reason };
   }
   const chain = chainOf(resolved, scale);
+  const peak = residuals === null ? null : peakValuesSeen(chain, residuals);
+  if (peak) return { ...peak, settings: resolved, ...(sweepsFromScatter ? { sweepsFromScatter } : {}) };
   const openDetector =
     settings.detector === 'average' &&
     settings.sweepTimeS === undefined &&
@@ -115,8 +118,7 @@ export function checkAveraging(
   const all =
     nothingAveraged || peak || kept.some(({ law }) => law === single.law) ? kept : [...kept, single];
   const countScale = scale ?? 'log';
-  const before =
-    declared?.chain.stages.filter(({ place, scale: on }) => place !== 'sweeps' && on !== countScale) ?? [];
+  const before = chainOf({ ...settings, sweeps: 1 }, countScale).stages;
   const seenAverages = sweepsSeen(before, countScale, residuals.scatterDb);
   const countStage: Stage = {
     place: 'sweeps',
