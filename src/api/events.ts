@@ -37,15 +37,22 @@ function isListed(client: QueryClient, captureId: string): boolean {
     .some(([, data]) => data?.pages.some(({ items }) => items.some(({ id }) => id === captureId)) ?? false);
 }
 
-let refetchTimer: ReturnType<typeof setTimeout> | undefined;
+const refresh = { wanted: false, running: false };
 
-/** Asks for the lists again, at most a few times a second however many events come. */
-function refreshLists(client: QueryClient): void {
-  refetchTimer ??= setTimeout(() => {
-    refetchTimer = undefined;
-    void client.invalidateQueries({ queryKey: captureKeys.lists });
-    void client.invalidateQueries({ queryKey: campaignKeys.all });
-  }, 150);
+/** Asks for the lists again, one request at a time however many events come; the last event is always covered. */
+async function refreshLists(client: QueryClient): Promise<void> {
+  refresh.wanted = true;
+  if (refresh.running) return;
+  refresh.running = true;
+  while (refresh.wanted) {
+    await new Promise((resolve) => setTimeout(resolve, 40));
+    refresh.wanted = false;
+    await Promise.allSettled([
+      client.invalidateQueries({ queryKey: captureKeys.lists }),
+      client.invalidateQueries({ queryKey: campaignKeys.all }),
+    ]);
+  }
+  refresh.running = false;
 }
 
 function apply(client: QueryClient, event: LabEvent): void {
@@ -54,7 +61,7 @@ function apply(client: QueryClient, event: LabEvent): void {
     event.kind === 'estimateMade' ||
     (event.state !== 'reading' && event.progress === null) ||
     !isListed(client, event.captureId);
-  if (settled) refreshLists(client);
+  if (settled) void refreshLists(client);
   if (settled || event.kind === 'captureChanged') {
     void client.invalidateQueries({ queryKey: captureOptions(event.captureId).queryKey });
   }

@@ -92,7 +92,7 @@ function rowSentence({ capture: { state, progress, problem } }: TableRow): React
   if (state === 'received') return <span className="text-ink3">waits to be read</span>;
   if (state !== 'reading') return null;
   const words =
-    progress === null
+    progress === null || progress.points === 0
       ? 'reading'
       : `reading ${countWords(progress.points)}${progress.ofPoints === null ? '' : ` of ${countWords(progress.ofPoints)}`}`;
   return (

@@ -59,15 +59,7 @@ export function CapturesPage() {
         title="Captures"
         actions={
           <>
-            {campaigns.data !== undefined && campaigns.data.length > 0 && (
-              <span className="mr-2 text-caption text-ink2 max-phone:hidden">
-                {plural(
-                  campaigns.data.reduce((sum, { captures }) => sum + captures, 0),
-                  'capture',
-                )}{' '}
-                in {plural(campaigns.data.length, 'campaign')}
-              </span>
-            )}
+            <CampaignCount campaigns={campaignList} />
             <ExportButton labId={lab.id} filtering={filtering} disabled={rows.captures.length === 0} />
             <Button kind={labIsEmpty ? 'secondary' : 'primary'} shortcut="n" onClick={drop.open}>
               Choose files
@@ -143,6 +135,17 @@ export function CapturesPage() {
       />
       <NewCampaignDialog labId={lab.id} onMade={onCampaign} onClose={() => setOnCampaign(null)} />
     </div>
+  );
+}
+
+function CampaignCount({ campaigns }: { campaigns: readonly Campaign[] }) {
+  const used = campaigns.filter(({ captures }) => captures > 0);
+  if (used.length === 0) return null;
+  const captures = used.reduce((sum, campaign) => sum + campaign.captures, 0);
+  return (
+    <span className="mr-2 text-caption text-ink2 max-phone:hidden">
+      {plural(captures, 'capture')} in {plural(used.length, 'campaign')}
+    </span>
   );
 }
 

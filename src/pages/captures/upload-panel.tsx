@@ -256,10 +256,11 @@ function lookOfCapture(upload: Upload, capture: Capture | undefined): Look {
     };
   }
   const of = progress.ofPoints === null ? '' : ` of ${countWords(progress.ofPoints)}`;
+  const points = progress.points === 0 ? '' : ` ${countWords(progress.points)}${of}`;
   return {
-    progress: `reading ${countWords(progress.points)}${of}`,
+    progress: `reading${points}`,
     share: progress.ofPoints === null ? null : progress.points / progress.ofPoints,
-    meaning: 'columns and settings understood',
+    meaning: 'the worker reads it',
     action: open(`Open ${capture.number}`),
   };
 }
