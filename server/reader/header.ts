@@ -143,13 +143,13 @@ export function findHeader(
     const recognised = kinds.some((kind) => kind !== 'unknown' && kind !== 'other');
     const colon = /^[^,;\t|]*[:=]/.test(comment ?? line);
     const key = keyMeaning(cells[0].replace(/[:=]\s*$/, ''));
-    const keyed = key !== null && !(key === 'ignored' && kinds[0] === 'frequency') && columns > 1;
-    const otherLevels = kinds.slice(1).every((kind) => kind === 'level' || kind === 'unknown');
+    const allKeys = cells.every((cell) => keyMeaning(cell) !== null && keyMeaning(cell) !== 'ignored');
+    const keyed = key !== null && key !== 'ignored' && columns > 1;
+    const table =
+      kinds.includes('frequency') && kinds.some((kind) => kind === 'level' || kind === 'unknown') && !allKeys;
     const header =
       !colon &&
-      (keyed
-        ? kinds[0] === 'frequency' && otherLevels
-        : recognised || (columns > 1 && comment === null && !units)) &&
+      (keyed ? table : recognised || (columns > 1 && comment === null && !units)) &&
       (columns > 1 || (recognised && !/\d/.test(cells[0])));
     if (!header) break;
     const merged = units

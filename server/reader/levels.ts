@@ -4,17 +4,12 @@ const LOWEST_DBM = -400;
 const HIGHEST_DBM = 400;
 
 /**
- * Turns a column's numbers into dBm (or dBm/Hz) in place of NaN where they can't be a level.
- * @returns the levels, and how many numbers are none: zero or negative on a linear scale, beyond ±400 dBm
+ * Turns a column's numbers into dBm (or dBm/Hz).
+ * @returns the levels; NaN where there is no number or it can't be a level: zero or negative on a linear scale, beyond ±400 dBm
  */
-export function toDbm(
-  numbers: Float64Array,
-  scale: LevelScale,
-  impedanceOhm: number,
-): { level: Float64Array; impossible: number } {
+export function toDbm(numbers: Float64Array, scale: LevelScale, impedanceOhm: number): Float64Array {
   const level = new Float64Array(numbers.length);
   const asIs = scale.label === 'dBm' || scale.label === 'dBm/Hz' || scale.label === '0.01 dBm';
-  let impossible = 0;
   for (let i = 0; i < numbers.length; i += 1) {
     const value = numbers[i];
     if (Number.isNaN(value)) {
@@ -22,13 +17,9 @@ export function toDbm(
       continue;
     }
     const dbm = asIs ? value : scale.linear && value <= 0 ? Number.NaN : scale.toDbm(value, impedanceOhm);
-    if (dbm >= LOWEST_DBM && dbm <= HIGHEST_DBM) level[i] = dbm;
-    else {
-      level[i] = Number.NaN;
-      impossible += 1;
-    }
+    level[i] = dbm >= LOWEST_DBM && dbm <= HIGHEST_DBM ? dbm : Number.NaN;
   }
-  return { level, impossible };
+  return level;
 }
 
 /** Lowest and highest of the levels that are there. */

@@ -46,6 +46,7 @@ interface Plan {
   structure: Structure;
   header: Header | null;
   headerText: string;
+  preamble: string[];
   stated: PreambleSettings;
   layout: Layout;
   byNumbersAlone: boolean;
@@ -119,6 +120,7 @@ function plan(file: OpenFile): Plan {
     structure,
     header,
     headerText: headerLine === undefined ? '' : displayText(lines[headerLine], 200),
+    preamble,
     stated,
     layout,
     byNumbersAlone: roles.byNumbersAlone && structure.columns > 1,
@@ -185,14 +187,13 @@ function blockPreamble(block: Block, { structure, layout }: Plan): PreambleSetti
   return gatherSettings(entries, structure.decimalMark, layout.levels.length);
 }
 
-function blockName(block: Block, number: number): string {
-  const title = block.before
+function blockName(before: string[], number: number): string {
+  const title = before
     .map(
-      ({ text }) =>
-        /^\W*((?:trace|spectrum|sweep|messkurve|courbe|traza)\b[^,;=:]{0,40})\W*$/i.exec(text)?.[1],
+      (text) => /^\W*((?:trace|spectrum|sweep|messkurve|courbe|traza)\b[^,;=:]{0,40})\W*$/i.exec(text)?.[1],
     )
-    .find((text) => text !== undefined);
-  return `, ${title && /\d/.test(title) ? displayText(title, 40) : `block ${number}`}`;
+    .find((text) => text !== undefined && /\d/.test(text));
+  return title ? displayText(title, 40) : `block ${number}`;
 }
 
 const DELIMITER_WORDS = new Map([
@@ -299,7 +300,10 @@ export async function readTraceFile(
       stated: merged,
       fileSettings: merged.settings,
       header: { line: (planned.header?.lines[0] ?? structure.firstRow) + 1, text: planned.headerText },
-      suffix: blocks.length > 1 ? blockName(block, index + 1) : '',
+      title:
+        blocks.length > 1
+          ? blockName(index === 0 ? planned.preamble : block.before.map(({ text }) => text), index + 1)
+          : '',
       impedanceOhm: merged.settings.impedanceOhm?.value ?? 50,
     });
     if (index === 0) axisWords = made.axisWords;

@@ -268,15 +268,18 @@ function settleWeak(gathering: Gathering, entry: Entry, name: 'rbwHz' | 'sweeps'
 
 /**
  * Settings from the statements of a preamble, each with its line.
- * @param entries the statements in the order of the file
+ * @param stated the statements in the order of the file
  * @param traceCount number of level columns, to tell one value per trace from a value with its unit
  */
 export function gatherSettings(
-  entries: Entry[],
+  stated: Entry[],
   decimalMark: DecimalMark,
   traceCount: number,
 ): PreambleSettings {
   const gathering = new Gathering(decimalMark, traceCount);
+  const numbers = new Set(stated.flatMap(({ trace }) => (trace === null ? [] : [trace])));
+  const single = traceCount === 1 && numbers.size === 1;
+  const entries = single ? stated.map((entry) => ({ ...entry, trace: null })) : stated;
   const late: (() => void)[] = [];
   const dates: Entry[] = [];
   let levelUnit: PreambleSettings['levelUnit'] = null;

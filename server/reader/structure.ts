@@ -74,10 +74,20 @@ function numericRow(
   return { cells, sign: signs.map((sign) => (sign === 'D' || sign === 'T' ? 'T' : 'N')).join('') };
 }
 
-/** Runs of rows with the same kinds of cells; blank and comment lines don't end a run, other text does. */
+/** The rows of a run from the first to the last that has its commonest kinds of cells. */
+function settled(rows: (Row & { sign: string })[]): Run {
+  const counts = new Map<string, number>();
+  for (const { sign } of rows) counts.set(sign, (counts.get(sign) ?? 0) + 1);
+  const [common] = [...counts].sort((a, b) => b[1] - a[1])[0];
+  const first = rows.findIndex(({ sign }) => sign === common);
+  const last = rows.findLastIndex(({ sign }) => sign === common);
+  return { columns: common.length, rows: rows.slice(first, last + 1) };
+}
+
+/** Runs of rows of numbers; blank and comment lines don't end a run, other text does. */
 function runsOf(lines: string[], reading: Reading): Run[] {
-  const runs: (Run & { sign: string })[] = [];
-  let current: (Run & { sign: string }) | null = null;
+  const runs: (Row & { sign: string })[][] = [];
+  let current: (Row & { sign: string })[] | null = null;
   lines.forEach((line, index) => {
     if (isBlankLine(line) || commentText(line) !== null) return;
     const row = numericRow(line, reading);
@@ -85,16 +95,39 @@ function runsOf(lines: string[], reading: Reading): Run[] {
       current = null;
       return;
     }
-    const fits =
-      current !== null &&
-      (row.sign === current.sign || (current.rows.length > 2 && row.sign.length < current.columns));
-    if (!fits || current === null) {
-      current = { columns: row.cells.length, sign: row.sign, rows: [] };
+    if (current === null) {
+      current = [];
       runs.push(current);
     }
-    current.rows.push({ index, cells: row.cells });
+    current.push({ index, ...row });
   });
-  return runs;
+  return runs.map(settled);
+}
+
+const BIG_ENOUGH = 50;
+
+/** True where a run goes on where the one before stopped: only text stands between. */
+function continues(before: Run, run: Run, { decimalMark }: Reading): boolean {
+  if (before.columns !== run.columns || before.rows.length < 2) return false;
+  const number = (row: Row, column: number) => {
+    const cell = parseCell(row.cells[column] ?? '', decimalMark);
+    return cell.kind === 'number' ? cell.value : Number.NaN;
+  };
+  return Array.from({ length: run.columns }, (_, column) => column).some((column) => {
+    const all = [...before.rows, ...run.rows.slice(0, 50)];
+    if (!strictlyMonotonic(all, column, decimalMark)) return false;
+    const last = number(before.rows[before.rows.length - 1], column);
+    const step = (last - number(before.rows[0], column)) / (before.rows.length - 1);
+    return (number(run.rows[0], column) - last) / step < 6 + before.rows.length * 0.05;
+  });
+}
+
+/** The first run that is the data, not a small table above it. */
+function dataRun(runs: Run[], reading: Reading): Run {
+  const longest = Math.max(...runs.map(({ rows }) => rows.length));
+  let index = runs.findIndex(({ rows }) => rows.length >= Math.min(longest / 2, BIG_ENOUGH));
+  while (index > 0 && continues(runs[index - 1], runs[index], reading)) index -= 1;
+  return runs[index];
 }
 
 function strictlyMonotonic(rows: Row[], column: number, decimalMark: DecimalMark): boolean {
@@ -137,10 +170,6 @@ function refuseCommaInCommas(run: Run, reading: Reading, lines: string[]): void 
   );
 }
 
-function better(a: { run: Run; rows: number; score: number }, b: { score: number } | null): boolean {
-  return b === null || a.score > b.score;
-}
-
 function hintedDelimiter(lines: string[]): Delimiter | null {
   const hint = /^\s*"?sep=(.)"?\s*$/i.exec(lines.find((line) => line.trim() !== '') ?? '');
   switch (hint?.[1]) {
@@ -157,15 +186,15 @@ function hintedDelimiter(lines: string[]): Delimiter | null {
 function bestReading(lines: string[]): { reading: Reading; run: Run } | null {
   const hint = hintedDelimiter(lines);
   const quoted = lines.some((line) => line.includes('"'));
-  let best: { reading: Reading; run: Run; rows: number; score: number } | null = null;
+  let best: { reading: Reading; run: Run; score: number } | null = null;
   for (const reading of READINGS) {
     if (reading.delimiter === ',' && reading.decimalMark === ',' && !quoted) continue;
     const runs = runsOf(lines, reading);
     if (runs.length === 0) continue;
-    const longest = Math.max(...runs.map(({ rows }) => rows.length));
-    const run = runs.find(({ rows }) => rows.length >= longest / 2);
-    if (!run) continue;
-    const rows = run.rows.length;
+    const run = dataRun(runs, reading);
+    const rows = Math.max(
+      ...runs.filter(({ columns }) => columns === run.columns).map((one) => one.rows.length),
+    );
     const axis = Array.from({ length: Math.min(run.columns, 3) }, (_, column) => column).some((column) =>
       strictlyMonotonic(run.rows.slice(0, 50), column, reading.decimalMark),
     );
@@ -174,8 +203,7 @@ function bestReading(lines: string[]): { reading: Reading; run: Run } | null {
     if (looksLikeCutDecimals(run, reading)) score *= 0.5;
     if (reading.delimiter === hint) score *= 3;
     if (reading.decimalMark === ',') score *= 0.99;
-    const candidate = { reading, run, rows, score };
-    if (better(candidate, best)) best = candidate;
+    if (best === null || score > best.score) best = { reading, run, score };
   }
   return best;
 }

@@ -6,7 +6,7 @@ import { commentText, isBlankLine, splitLine, withoutEmptyTail } from './split-l
 import type { ScanLayout } from './row-scanner.ts';
 
 const MOST_KEPT_LINES = 2000;
-const MOST_KEPT_GAPS = 1000;
+const MOST_ANCHORS = 200_000;
 const MOST_SEGMENTS = 20_000;
 
 /** A cell or row without a value, and where it stands. */
@@ -41,9 +41,9 @@ function note(record: Lost, line: number): void {
 export class Table {
   readonly columns: Columns;
   readonly segments: Segment[] = [];
-  /** Per wanted column: the first rows without a value there, with their lines. */
-  readonly gaps: { row: number; line: number }[][];
   lastLine = 0;
+  /** Rows whose line doesn’t follow from the one before. */
+  private readonly anchors: { row: number; line: number }[] = [];
   private before: Segment['before'] = [];
   private broken = lost();
   private textSince = true;
@@ -55,11 +55,27 @@ export class Table {
     private readonly hasAxis: boolean,
   ) {
     this.columns = new Columns(shiftOf.length);
-    this.gaps = shiftOf.map(() => []);
+  }
+
+  /** The line of a row; null in files that are interrupted too often to know. */
+  lineOfRow(row: number): number | null {
+    let low = 0;
+    let high = this.anchors.length - 1;
+    if (high < 0 || (this.anchors.length >= MOST_ANCHORS && row >= this.anchors[high].row)) return null;
+    while (low < high) {
+      const middle = (low + high + 1) >> 1;
+      if (this.anchors[middle].row <= row) low = middle;
+      else high = middle - 1;
+    }
+    return this.anchors[low].line + row - this.anchors[low].row;
   }
 
   /** A row is about to come at this line. */
   resume(line: number): void {
+    const anchor = this.anchors.at(-1);
+    const { rows } = this.columns;
+    if ((!anchor || anchor.line + rows - anchor.row !== line) && this.anchors.length < MOST_ANCHORS)
+      this.anchors.push({ row: rows, line });
     const current = this.segments.at(-1);
     if (current && !this.textSince) {
       current.broken.count += this.broken.count;
@@ -100,10 +116,6 @@ export class Table {
     const read = this.careful(cells);
     if (read) {
       this.resume(line);
-      read.forEach((value, place) => {
-        const gaps = this.gaps[place];
-        if (Number.isNaN(value) && gaps.length < MOST_KEPT_GAPS) gaps.push({ row: this.columns.rows, line });
-      });
       this.columns.push(read);
       this.lastLine = line;
       return;

@@ -41,8 +41,8 @@ export interface BlockSource {
   /** Settings of the file, which a trace's own ones are held against. */
   fileSettings: Settings;
   header: { line: number; text: string };
-  /** Added to names where there are several blocks. */
-  suffix: string;
+  /** Names the block where there are several; else empty. */
+  title: string;
   impedanceOhm: number;
 }
 
@@ -59,33 +59,25 @@ function allZero(values: Float64Array): boolean {
 }
 
 /** Says where points were left out; refuses when they are more than a tenth. */
-function tellLost(
-  source: BlockSource,
-  column: LevelColumn,
-  name: string,
-  rows: number,
-  impossible: number,
-): ReaderProblem[] {
+function tellLost(source: BlockSource, level: Float64Array, name: string): ReaderProblem[] {
   const { table, block } = source;
-  const values = table.columns.part(column.place, block.fromRow, block.toRow);
+  const lines = [...block.broken.lines];
   let gaps = 0;
-  for (const value of values) if (Number.isNaN(value)) gaps += 1;
-  const count = gaps + impossible + block.broken.count;
+  for (let i = 0; i < level.length; i += 1) {
+    if (!Number.isNaN(level[i])) continue;
+    gaps += 1;
+    const line = gaps <= 20 ? table.lineOfRow(block.fromRow + i) : null;
+    if (line !== null) lines.push(line);
+  }
+  const count = gaps + block.broken.count;
   if (count === 0) return [];
-  const lines = [
-    ...block.broken.lines,
-    ...table.gaps[column.place]
-      .filter(({ row }) => row >= block.fromRow && row < block.toRow)
-      .map(({ line }) => line),
-  ].sort((a, b) => a - b);
-  const where = lines.length > 0 ? ` (${lineWords(lines, gaps + block.broken.count)})` : '';
-  const beyond =
-    impossible > 0 ? `; ${countWords(impossible)} of them can’t be a level in ${column.scale.label}` : '';
-  const total = rows + block.broken.count;
+  lines.sort((a, b) => a - b);
+  const where = lines.length > 0 ? ` (${lineWords(lines, count)})` : '';
+  const total = level.length + block.broken.count;
   if (count > MOST_LOST_SHARE * total)
     refuse(
       'tooManyLost',
-      `${countWords(count)} of ${countWords(total)} points of “${name}” have no usable level${where}${beyond}; more than a tenth can’t be left out.`,
+      `${countWords(count)} of ${countWords(total)} points of “${name}” have no usable level${where}; more than a tenth can’t be left out.`,
       'Export the trace again with a number in every row.',
       lines[0] ?? block.firstLine,
     );
@@ -93,11 +85,18 @@ function tellLost(
     problem(
       'pointsLeftOut',
       'caution',
-      `${plural(count, 'point')} of “${name}” ${count === 1 ? 'has' : 'have'} no usable level${where}${beyond} and ${count === 1 ? 'is' : 'are'} left out.`,
+      `${plural(count, 'point')} of “${name}” ${count === 1 ? 'has' : 'have'} no usable level${where} and ${count === 1 ? 'is' : 'are'} left out.`,
       'Check these lines; the rest of the trace is used.',
       lines[0] ?? block.firstLine,
     ),
   ];
+}
+
+/** Values that differ from the one before. */
+function changes(values: Float64Array): number {
+  let count = 1;
+  for (let i = 1; i < values.length; i += 1) if (values[i] !== values[i - 1]) count += 1;
+  return count;
 }
 
 interface Axis {
@@ -134,7 +133,7 @@ function axisOf(source: BlockSource, column: LevelColumn, problems: ReaderProble
         words: 'offsets from the centre',
       };
     }
-    const distinct = rows > 20 ? new Set(read).size : rows;
+    const distinct = rows > 20 ? changes(read) : rows;
     if (distinct < rows / 2) {
       const repeats = repeatedSweeps(read);
       const made = repeats.length > 1 ? null : madeAxis(stated.settings, stated.stepHz, rows);
@@ -170,9 +169,9 @@ function traceName(column: LevelColumn, source: BlockSource, only: boolean): str
   const header = column.column.name;
   const stated = only ? source.stated.traceName : null;
   const generic = header === '' || /^(?:level|amplitude|power|pegel|niveau|nivel|magnitude|y)$/i.test(header);
-  return displayText(
-    `${generic && stated ? stated : header || (only ? 'Trace' : `Trace ${column.column.index}`)}${source.suffix}`,
-  );
+  const name = generic && stated ? stated : header || (only ? 'Trace' : `Trace ${column.column.index}`);
+  if (source.title === '') return displayText(name);
+  return displayText(generic ? source.title : `${name}, ${source.title}`);
 }
 
 /**
@@ -210,8 +209,8 @@ export function blockTraces(source: BlockSource): {
       return;
     }
     const numbers = table.columns.part(column.place, block.fromRow, block.toRow);
-    const { level, impossible } = toDbm(numbers, column.scale, source.impedanceOhm);
-    problems.push(...tellLost(source, column, name, rows, impossible));
+    const level = toDbm(numbers, column.scale, source.impedanceOhm);
+    problems.push(...tellLost(source, level, name));
     const axis = axes.get(column.axisPlace) ?? axisOf(source, column, problems);
     axes.set(column.axisPlace, axis);
     axisWords = axis.words;
