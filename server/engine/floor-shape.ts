@@ -3,7 +3,7 @@ import { robustFloor } from './floor.ts';
 import type { PointLaw } from './point-law.ts';
 
 const DB_PER_NEPER = 10 / Math.LN10;
-const MOST_BINS = 4096;
+const MOST_BINS = 1024;
 const SIGNIFICANT_SIGMAS = 3.3;
 
 export interface FloorShapeInput {
@@ -96,12 +96,17 @@ export function floorShape(input: FloorShapeInput): FloorShape {
   };
 }
 
-/** Mean power and mean place of the kept points in at most 4096 equal runs of points; empty runs are left out. */
-export function binPower(powerMw: Float64Array, frequencyHz: Float64Array, mask: Uint8Array): BinnedPower {
+/** Mean power and mean place of the kept points in at most `most` equal runs of points; empty runs are left out. */
+export function binPower(
+  powerMw: Float64Array,
+  frequencyHz: Float64Array,
+  mask: Uint8Array,
+  most = MOST_BINS,
+): BinnedPower {
   const length = powerMw.length;
   const first = frequencyHz[0];
   const span = frequencyHz[length - 1] - first;
-  const size = Math.min(MOST_BINS, length);
+  const size = Math.min(most, length);
   const at = new Float64Array(size);
   const meanPower = new Float64Array(size);
   const count = new Float64Array(size);
@@ -163,7 +168,7 @@ export function fitLogLink(
     const step = multiply(inverse, score);
     const damping = 1 / Math.max(1, ...step.map(Math.abs));
     step.forEach((change, row) => (coefficients[row] += damping * change));
-    if (step.every((change) => Math.abs(change) < 1e-9)) break;
+    if (step.every((change) => Math.abs(change) < 1e-7)) break;
   }
   const variance = Math.max(scatter.law.relativeVariance, binnedVariance(bins, coefficients, scatter.tau));
   return {

@@ -5,6 +5,7 @@ import { binPower } from './floor-shape.ts';
 const FEWEST_CYCLES = 3;
 const DETREND_DEGREE = 5;
 const NEIGHBOURHOOD = 48;
+const MOST_BINS = 4096;
 
 export interface Ripple {
   periodHz: number;
@@ -36,13 +37,13 @@ export function findRipple(
   filterWidthHz: number,
   falseAlarm = 0.001,
 ): Ripple | null {
-  const bins = binPower(powerMw, frequencyHz, mask);
+  const bins = binPower(powerMw, frequencyHz, mask, MOST_BINS);
   const used = bins.at.length;
   if (used < 40) return null;
   const spanHz = frequencyHz[frequencyHz.length - 1] - frequencyHz[0];
   const residual = detrended(bins.at, bins.meanPower, bins.count);
 
-  const grid = Math.min(4096, powerMw.length);
+  const grid = Math.min(MOST_BINS, powerMw.length);
   let size = 64;
   while (size < 2 * grid) size *= 2;
   const series = new Float64Array(2 * size);
@@ -65,12 +66,20 @@ export function findRipple(
   for (let line = 0; line < power.length; line++) {
     power[line] = spectrum[2 * line] ** 2 + spectrum[2 * line + 1] ** 2;
   }
+  const running = new Float64Array(power.length + 1);
+  for (let line = 0; line < power.length; line++) running[line + 1] = running[line] + power[line];
+  const meanAround = (line: number) => {
+    const from = Math.max(first, line - 60);
+    const to = Math.min(last + 1, line + 61);
+    return (running[to] - running[from]) / (to - from);
+  };
   let best = -1;
   let bestRatio = 0;
   let background = 0;
   const reach = Math.ceil(NEIGHBOURHOOD * linesPerCycle * 0.5);
   for (let line = first; line <= last; line++) {
     if (power[line] < power[line - 1] || power[line] < power[line + 1]) continue;
+    if (power[line] < 2.5 * meanAround(line)) continue;
     const level = localBackground(power, line, first, last, reach, Math.ceil(3 * linesPerCycle));
     if (power[line] > bestRatio * level) {
       bestRatio = power[line] / level;

@@ -32,7 +32,7 @@ export function thresholdFactor(
     low = high;
     high *= 2;
   }
-  for (let round = 0; round < 40; round++) {
+  for (let round = 0; round < 30; round++) {
     const middle = Math.sqrt(low * high);
     if (exceedance(middle) > probability) low = middle;
     else high = middle;
@@ -47,7 +47,7 @@ function floorSpread(relativeVariance: number, cells: number) {
   const deviation = 1 / Math.sqrt(shape);
   const from = -9 * deviation - 12 / shape;
   const to = 6 * deviation;
-  const nodes = 161;
+  const nodes = 81;
   const shifts: number[] = [];
   const weights: number[] = [];
   let total = 0;

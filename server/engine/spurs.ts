@@ -104,6 +104,7 @@ export function findSpurs(search: SpurSearch): SpursFound {
   });
   let thresholdPower: Float64Array = new Float64Array(0);
   let probability = 0;
+  const known = new Map<string, number>();
   for (let pass = 0; pass < PASSES; pass++) {
     if (pass > 0) {
       floor = robustFloor(powerMw, frequencyHz, {
@@ -123,12 +124,12 @@ export function findSpurs(search: SpurSearch): SpursFound {
     const tail = search.videoSmoothed === true ? videoTailFactor(law.relativeVariance, probability) : 1;
     const rounding = 10 ** ((search.roundingDb ?? 0) / 2 / 10);
     const chance = probability;
-    thresholdPower = thresholds(
-      floor.floorPower,
-      frequencyHz,
-      floor.cellsAt,
-      (cells) => thresholdFactor(law, chance, cells) * tail * rounding,
-    );
+    thresholdPower = thresholds(floor.floorPower, frequencyHz, floor.cellsAt, (cells) => {
+      const key = `${chance.toPrecision(4)} ${cells.toPrecision(2)}`;
+      const factor = known.get(key) ?? thresholdFactor(law, chance, Number(cells.toPrecision(2)));
+      known.set(key, factor);
+      return factor * tail * rounding;
+    });
     const detection = detect({
       powerMw,
       frequencyHz,

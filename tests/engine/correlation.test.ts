@@ -22,7 +22,7 @@ function trueTau(spacingPerWidth: number): number {
 
 describe('points per independent point', () => {
   it.each([0.05, 0.2, 0.5, 1])(
-    'are within 10 %% of the truth for points %d filter widths apart',
+    'are close to the truth for points %d filter widths apart',
     (spacing) => {
       const length = 60001;
       const powerMw = simulateCapture(
