@@ -120,7 +120,8 @@ interface LaggedSums {
 
 /** The first lags by plain sums, as they are asked for; all others at once by Fourier transform. */
 function laggedSums(centred: Float64Array, mask: Uint8Array, lags: number): LaggedSums {
-  const gaps = mask.includes(1);
+  const missing: number[] = [];
+  for (let index = 0; index < mask.length; index++) if (mask[index] === 1) missing.push(index);
   const known: { product: number; pairs: number }[] = [];
   let fourier: { products: Float64Array; pairs: Float64Array } | null = null;
   return {
@@ -130,18 +131,21 @@ function laggedSums(centred: Float64Array, mask: Uint8Array, lags: number): Lagg
         fourier ??= laggedSumsByFourier(centred, mask, lags);
         return { product: fourier.products[lag], pairs: fourier.pairs[lag] };
       }
-      known[lag] ??= sumAtLag(centred, mask, lag, gaps);
+      known[lag] ??= sumAtLag(centred, mask, lag, missing);
       return known[lag];
     },
   };
 }
 
-function sumAtLag(centred: Float64Array, mask: Uint8Array, lag: number, gaps: boolean) {
+function sumAtLag(centred: Float64Array, mask: Uint8Array, lag: number, missing: readonly number[]) {
   const end = centred.length - lag;
   let product = 0;
   for (let index = 0; index < end; index++) product += centred[index] * centred[index + lag];
   let pairs = end;
-  if (gaps) for (let index = 0; index < end; index++) pairs -= mask[index] | mask[index + lag];
+  for (const index of missing) {
+    if (index < end) pairs -= 1;
+    if (index >= lag && mask[index - lag] !== 1) pairs -= 1;
+  }
   return { product, pairs };
 }
 

@@ -2,7 +2,7 @@ import { fitPolynomial, legendre, legendreBasis, multiply, type PolynomialFit } 
 import { sampleQuantile } from './floor-quantile.ts';
 import type { PointLaw } from './point-law.ts';
 
-const LARGEST_SAMPLE = 2048;
+const LARGEST_SAMPLE = 1024;
 const MOST_BLOCKS = 64;
 const HIGHEST_DEGREE = 12;
 const GRID = 4096;

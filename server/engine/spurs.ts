@@ -176,7 +176,7 @@ function union(one: Uint8Array, other: Uint8Array): Uint8Array {
   return both;
 }
 
-/** Share of independent points, from the correlation of at most 32768 points in the middle of the trace. */
+/** Share of independent points, from the correlation of at most 16384 points in the middle of the trace. */
 function fractionFromData(search: SpurSearch, left: Uint8Array): number {
   const { powerMw, frequencyHz, law, spacingHz, filterWidthHz } = search;
   const { floorPower } = robustFloor(powerMw, frequencyHz, {
@@ -186,7 +186,7 @@ function fractionFromData(search: SpurSearch, left: Uint8Array): number {
     excluded: left,
     shortest: true,
   });
-  const count = Math.min(powerMw.length, 32768);
+  const count = Math.min(powerMw.length, 16384);
   const start = (powerMw.length - count) >> 1;
   const residual = new Float64Array(count);
   const mask = left.slice(start, start + count);
