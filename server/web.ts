@@ -18,6 +18,7 @@ const server = createServer({ requestTimeout: REQUEST_MS, headersTimeout: 20_000
 server.listen(config.port, config.host, () => {
   log.info({ address: server.address() }, 'web is listening');
   process.send?.('ready');
+  context.threads.warmUp().catch((error: unknown) => log.warn({ err: error }, 'warming up failed'));
 });
 
 stopInTime(log, async () => {

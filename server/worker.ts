@@ -5,6 +5,7 @@ import { pino } from 'pino';
 import { readConfig } from './config.ts';
 import { createDataSource } from './database.ts';
 import { taskList } from './jobs/task-list.ts';
+import { warmUp } from './jobs/warm-up.ts';
 import { rescueCaptures } from './services/rescue-captures.ts';
 import { stopInTime } from './services/stop-in-time.ts';
 import { WorkerSigns } from './services/worker-signs.ts';
@@ -44,6 +45,7 @@ async function startQueue(): Promise<Runner> {
 
 await signs.beat();
 await signs.freePredecessors();
+await warmUp();
 let runner = await startQueue();
 log.info('worker is waiting for jobs');
 

@@ -30,6 +30,8 @@ export interface ThreadPool {
   /** Computes on a thread, never on the event loop. */
   estimate(task: EstimateTask): Promise<EngineEstimate>;
   points(task: PointsTask): Promise<PointsAnswer>;
+  /** Readies every thread, so that nobody waits for compiling. */
+  warmUp(): Promise<void>;
   close(): Promise<void>;
 }
 
@@ -57,6 +59,9 @@ export function createThreadPool(databaseUrl: string): ThreadPool {
   return {
     estimate: async (task) => run('estimate', task),
     points: async (task) => run('points', task),
+    warmUp: async () => {
+      await Promise.all(Array.from({ length: threads }, () => pool.run(null, { name: 'warmUp' })));
+    },
     close: () => pool.destroy(),
   };
 }

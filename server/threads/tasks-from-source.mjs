@@ -3,4 +3,4 @@ import { register } from 'tsx/esm/api';
 
 register();
 
-export const { estimate, points } = await import('./tasks.ts');
+export const { estimate, points, warmUp } = await import('./tasks.ts');

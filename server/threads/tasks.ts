@@ -3,6 +3,7 @@ import { z } from 'zod';
 import type { EngineEstimate } from '../../shared/estimate.ts';
 import { estimateDensity } from '../engine/estimate.ts';
 import { bucketed } from '../services/buckets.ts';
+import { warmUpTrace } from '../services/warm-up-trace.ts';
 import type { EstimateTask, PointsAnswer, PointsTask } from './pool.ts';
 import { TraceCache } from './traces.ts';
 
@@ -14,6 +15,22 @@ export async function estimate(task: EstimateTask): Promise<EngineEstimate> {
   const trace = await traces.get(task);
   const { sha256, traceIndex, settings, exclusions, options } = task;
   return estimateDensity({ trace, sha256, traceIndex, settings, exclusions, options });
+}
+
+const WARM_UP_RUNS = 4;
+
+/** Computes on a made-up trace some times, so that the first real task finds compiled code. */
+export function warmUp(): void {
+  const trace = { ...warmUpTrace(), unit: 'dBm' as const };
+  const origin = { kind: 'assumed' as const, reason: 'warm-up' };
+  const settings = {
+    rbwHz: { value: 10_000, origin },
+    averagingScale: { value: 'log' as const, origin },
+    sweeps: { value: 20, origin },
+  };
+  for (let run = 0; run < WARM_UP_RUNS; run += 1) {
+    estimateDensity({ trace, sha256: '', traceIndex: 0, settings, exclusions: [] });
+  }
 }
 
 /** Index of the first frequency that isn't below `hz`. */

@@ -4,6 +4,7 @@ import { runOnce, Logger as QueueLogger } from 'graphile-worker';
 import { Client } from 'pg';
 import { pino } from 'pino';
 import type { Express } from 'express';
+import { vi } from 'vitest';
 import { z } from 'zod';
 import { createApp } from '../../server/app.ts';
 import { readConfig } from '../../server/config.ts';
@@ -14,6 +15,8 @@ import { closeContext, openContext } from '../../server/services/open-context.ts
 import { DEMO_PASSWORD, seedDemo } from '../../server/services/seed-demo.ts';
 import { UploadItem } from '../../shared/capture.ts';
 import { Session } from '../../shared/session.ts';
+
+vi.setConfig({ testTimeout: 30_000, hookTimeout: 60_000 });
 
 /** People of the two seeded labs by what they are. */
 export const EMAILS = {
@@ -209,7 +212,7 @@ export function uploadForm(
 export async function until(
   condition: () => Promise<boolean>,
   what: string,
-  patienceMs = 15_000,
+  patienceMs = 20_000,
 ): Promise<void> {
   const end = Date.now() + patienceMs;
   while (!(await condition())) {
