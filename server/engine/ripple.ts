@@ -93,6 +93,7 @@ export function findRipple(
   const tail = (1 + bestRatio / NEIGHBOURHOOD) ** -NEIGHBOURHOOD;
   const chance = -Math.expm1(2 * independentLines * Math.log1p(-tail));
   if (!(chance <= falseAlarm)) return null;
+  if (!persists(bins.at, bins.count, residual, best / linesPerCycle)) return null;
   const { offset, height } = parabola(power[best - 1], power[best], power[best + 1]);
   const amplitude = Math.min(0.98, (2 * Math.sqrt(height)) / windowed);
   return {
@@ -101,6 +102,25 @@ export function findRipple(
     falseAlarm: chance,
     significance: 1 - chance,
   };
+}
+
+/**
+ * Whether a line runs through the span: at least three of its quarters carry it in phase, with at least 0.08 of the
+ * whole each (an even line: 0.25). A step or a bump in the floor makes lines that sit in one place.
+ */
+function persists(at: Float64Array, count: Float64Array, residual: Float64Array, cycles: number): boolean {
+  const re = [0, 0, 0, 0];
+  const im = [0, 0, 0, 0];
+  for (let bin = 0; bin < at.length; bin++) {
+    const quarter = Math.min(3, Math.floor(2 * (at[bin] + 1)));
+    const angle = Math.PI * cycles * (at[bin] + 1);
+    re[quarter] += count[bin] * residual[bin] * Math.cos(angle);
+    im[quarter] += count[bin] * residual[bin] * Math.sin(angle);
+  }
+  const wholeRe = re.reduce((sum, part) => sum + part, 0);
+  const wholeIm = im.reduce((sum, part) => sum + part, 0);
+  const whole = wholeRe * wholeRe + wholeIm * wholeIm;
+  return re.filter((part, quarter) => part * wholeRe + im[quarter] * wholeIm > 0.08 * whole).length >= 3;
 }
 
 /** Relative power about a polynomial in place, weighted by the points in each bin. */

@@ -175,6 +175,14 @@ describe('ripple', () => {
     expect(found).toBeLessThanOrEqual(6);
   }, 30_000);
 
+  it('is not a step in the floor', () => {
+    const input = capture(
+      { length: 4001, spacingPerWidth: 0.25, sweeps: 10, shape: (at) => (at < 0.5 ? 10 : 1) },
+      9,
+    );
+    expect(findRipple(input.powerMw, input.frequencyHz, input.mask, 1000)).toBeNull();
+  });
+
   it('is found through gaps', () => {
     const input = capture(
       { length: 4001, sweeps: 10, shape: (at) => 1 + 0.2 * Math.cos(2 * Math.PI * 15 * at) },
