@@ -5,7 +5,9 @@ import { fileURLToPath, pathToFileURL } from 'node:url';
 
 const root = new URL('../../', import.meta.url);
 if (!existsSync(new URL('node_modules/tsx', root))) {
-  console.error(`The Node packages are not installed. Run this first: npm ci --prefix ${fileURLToPath(root)}`);
+  console.error(
+    `The Node packages are not installed. Run this first: npm ci --prefix ${fileURLToPath(root)}`,
+  );
   process.exit(1);
 }
 const { serverBuildIsFresh } = await import('./lib/build.mjs');
