@@ -71,7 +71,7 @@ function Frame({ session }: { session: Session }) {
         <main
           id="main"
           tabIndex={-1}
-          className="min-h-screen min-w-0 px-8 pt-6 pb-10 outline-none max-phone:min-h-0 max-phone:px-4 max-phone:pt-4"
+          className="min-h-screen min-w-0 border-rule px-8 phone:border-l pt-6 pb-10 outline-none max-phone:min-h-0 max-phone:px-4 max-phone:pt-4"
         >
           <Outlet key={lab.id} />
         </main>
