@@ -1,5 +1,6 @@
 import { Router } from 'express';
 import { CaptureChanges, CaptureQuery } from '../../shared/capture.ts';
+import type { Capture } from '../entities/capture.ts';
 import * as policy from '../policies/captures.ts';
 import type { Actor } from '../policies/verdict.ts';
 import { presentCapture, presentCaptureSummary } from '../presenters/capture.ts';
@@ -42,11 +43,10 @@ export function captureRoutes(context: Context): Router {
     response.status(items.some(({ duplicate, id }) => id !== null && !duplicate) ? 201 : 200).json({ items });
   });
 
-  const present = async (captureId: string, actor: Actor) => {
-    const [capture, traces, estimates] = await Promise.all([
-      loadCapture(dataSource, captureId),
-      loadTraces(dataSource, captureId),
-      loadEstimates(dataSource, captureId),
+  const present = async (capture: Capture, actor: Actor) => {
+    const [traces, estimates] = await Promise.all([
+      loadTraces(dataSource, capture.id),
+      loadEstimates(dataSource, capture.id),
     ]);
     return presentCapture(capture, traces, estimates, actor);
   };
@@ -55,7 +55,7 @@ export function captureRoutes(context: Context): Router {
     const actor = actorOf(request);
     const capture = await loadCapture(dataSource, request.params.captureId);
     authorise(policy.seeCaptures(actor, capture));
-    response.json(await present(capture.id, actor));
+    response.json(await present(capture, actor));
   });
 
   router.patch('/api/captures/:captureId', async (request, response) => {
@@ -63,7 +63,7 @@ export function captureRoutes(context: Context): Router {
     const capture = await loadCapture(dataSource, request.params.captureId);
     authorise(policy.editCapture(actor, capture));
     await changeCapture(dataSource, actor, capture, parsed(CaptureChanges, request.body, 'request'));
-    response.json(await present(capture.id, actor));
+    response.json(await present(await loadCapture(dataSource, capture.id), actor));
   });
 
   return router;

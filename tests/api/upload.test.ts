@@ -120,6 +120,27 @@ describe('an upload', () => {
   });
 });
 
+test('two hundred uploads at once: each is stored whole or refused with Retry-After, and the rest goes on', async () => {
+  const before = await counts();
+  const uploads = Array.from({ length: 200 }, (_, index) =>
+    send(uploadForm({ [`crowd ${index}.csv`]: traceCsv({ seed: 1000 + index, points: 20, sweeps: 1 }) })),
+  );
+  const light = await app.nobody.call('GET', '/api/health');
+  expect(light.status).toBe(200);
+  const answers = await Promise.all(uploads);
+  const stored = answers.filter(({ status }) => status === 201);
+  const refused = answers.filter(({ status }) => status === 503);
+  expect(stored.length + refused.length).toBe(200);
+  expect(stored.length).toBeGreaterThan(0);
+  expect(refused.every(({ headers }) => Number(headers.get('retry-after')) > 0)).toBe(true);
+  const after = await counts();
+  expect([after.captures - before.captures, after.chunks - before.chunks, after.jobs - before.jobs]).toEqual([
+    stored.length,
+    stored.length,
+    stored.length,
+  ]);
+});
+
 describe('fields', () => {
   test('campaign and settings go onto each file', async () => {
     const technician = await app.as('technician');
