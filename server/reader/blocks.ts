@@ -1,6 +1,8 @@
 import type { Lost, Segment, Table } from './table.ts';
 import { commentText } from './split-line.ts';
 
+const MOST_CARRIED = 500;
+
 /** Rows that form one table: a capture has one, or several below one another. */
 export interface Block {
   fromRow: number;
@@ -52,7 +54,7 @@ export function sortBlocks(table: Table, axis: Float64Array | null): Blocks {
   let carried: Segment['before'] = [];
   for (const segment of table.segments) {
     const block = blocks.at(-1);
-    const before = [...carried, ...segment.before];
+    const before = carried.length > 0 ? [...carried, ...segment.before].slice(-MOST_CARRIED) : segment.before;
     if (block && footer === null && block.toRow === segment.fromRow && goesOn(block, segment, axis)) {
       block.toRow = segment.toRow;
       addLost(block.broken, segment.broken);

@@ -23,7 +23,7 @@ export interface Header {
 export function nameAndUnit(text: string): HeaderCell {
   const plain = text.trim();
   const named = (name: string, unit: string) => ({
-    name: displayText(name.replace(/[\s,:/_-]+$/, '')),
+    name: displayText(unit === '' ? name : name.replace(/[\s,:/_-]+$/, '')),
     unit: unit.trim(),
   });
   if (isUnit(plain)) return named('', plain);
@@ -106,14 +106,18 @@ function headerCells(text: string, delimiter: Delimiter, columns: number): strin
   return columns === 1 && cells.length > 0 ? [text.trim()] : null;
 }
 
-const isNumber = (cell: string) => /^[+-]?[\d.,]+(?:e[+-]?\d+)?$/i.test(cell);
+/** A number, with or without its unit: no header has one at a cell’s beginning, save `1st` and the like. */
+const isNumber = (cell: string) =>
+  /^[+-]?[\d.,]+(?:e[+-]?\d+)?(?:\s*\(?[kMG]?Hz\)?|\s*\(?dBm?\)?)?$/i.test(cell);
+
+const LONGEST_CELL = 120;
 
 const MARKER =
   /^\W*(?:trace\s*(?:data|\d+)?|data|begin|values?|daten|messwerte|measurement data|spectrum data|points|datos|données|donnees|start of data|curve data)\W*(?:begin|start)?\W*$/i;
 
 /** True for a line that only says that data follow: `DATA`, `[Trace data]`, `BEGIN`. */
 export function isDataMarker(line: string): boolean {
-  return MARKER.test(line);
+  return line.length < 200 && MARKER.test(line);
 }
 
 /**
@@ -132,7 +136,7 @@ export function findHeader(
     if (isBlankLine(line) || isDataMarker(line)) continue;
     const comment = commentText(line);
     const cells = headerCells(comment ?? line, delimiter, columns);
-    if (!cells || cells.some(isNumber)) break;
+    if (!cells || cells.some((cell) => cell.length > LONGEST_CELL || isNumber(cell))) break;
     const onlyUnits = cells.every((cell) => cell === '' || isUnit(cell.replace(/^[[(](.*)[\])]$/, '$1')));
     if (onlyUnits && !units && cells.some((cell) => cell !== '')) {
       units = { cells, line: index };

@@ -5,6 +5,7 @@ export type Cell = { kind: 'number'; value: number; unit: string } | { kind: 'mi
 
 const MISSING_CELL: Cell = { kind: 'missing' };
 const TEXT_CELL: Cell = { kind: 'text' };
+const LONGEST_NUMBER = 100;
 
 const UNIT = '([A-Za-zµμ°%Ω√²/\'"][\\wµμ°%Ω√²/()·*]*)?';
 const WITH_POINT = new RegExp(`^([+-]?(?:\\d+\\.?\\d*|\\.\\d+))(?:[eE]([+-]?\\d{1,4}))?\\s*${UNIT}$`);
@@ -31,6 +32,7 @@ export function isMissing(text: string): boolean {
  * @returns a finite number with its unit (`''` where none), `missing` for NaN, `---`, infinities and `1e400`, or `text`
  */
 export function parseCell(text: string, decimalMark: DecimalMark, shift = 0): Cell {
+  if (text.length > LONGEST_NUMBER) return TEXT_CELL;
   const plain = plainSigns(text).trim();
   const match = (decimalMark === '.' ? WITH_POINT : WITH_COMMA).exec(plain);
   if (match) {

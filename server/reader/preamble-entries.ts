@@ -21,10 +21,12 @@ export interface Entry {
 const JsonLine = z.record(z.string(), z.unknown());
 
 const UNIT_CELL = /^(?:ohms?|Ω|Ω|K|°C|%|k|M|G)$/i;
+const LONGEST_KEY = 120;
 const MODE_CELL = /^(?:auto|man|manual|fixed|coupled|x)$/i;
 
 /** Key without the unit or kind that it carries: `RBW [kHz]`, `RBW (-3 dB)`, `Start/MHz`, `rbw_hz`. */
 export function keyAndUnit(text: string): { key: string; unit: string } {
+  if (text.length > LONGEST_KEY) return { key: text, unit: '' };
   const plain = text
     .trim()
     .replace(/^"|"$/g, '')
@@ -145,7 +147,7 @@ export function preambleEntries(lines: string[], firstLine: number, delimiter: D
   let section: number | null = null;
   let pendingKeys: string[] | null = null;
   lines.forEach((raw, index) => {
-    if (isBlankLine(raw) || raw.length > 4000) return;
+    if (isBlankLine(raw) || raw.length > 1000) return;
     const text = (commentText(raw) ?? raw).replace(/[\u0000\u001a]/g, ' ').trim();
     const line = firstLine + index;
     const named = /^\[?\s*(?:trace|tr|messkurve|courbe|traza)\s*#?(\d{1,2})\s*\]?\s*:?\s*[,;\t]*$/i.exec(

@@ -29,6 +29,24 @@ export function refuse(code: string, message: string, advice: string, line?: num
   throw new UnreadableFile([problem(code, 'stop', message, advice, line)]);
 }
 
+const MOST_ALIKE = 5;
+
+/** At most five problems of one code; the fifth says how many more there are. */
+export function condensed(problems: ReaderProblem[]): ReaderProblem[] {
+  const counts = new Map<string, number>();
+  for (const { code } of problems) counts.set(code, (counts.get(code) ?? 0) + 1);
+  const seen = new Map<string, number>();
+  return problems.flatMap((one) => {
+    const number = (seen.get(one.code) ?? 0) + 1;
+    seen.set(one.code, number);
+    const more = (counts.get(one.code) ?? 0) - MOST_ALIKE;
+    if (number > MOST_ALIKE) return [];
+    return number === MOST_ALIKE && more > 0
+      ? [{ ...one, message: `${one.message} (And ${more} more like this.)` }]
+      : [one];
+  });
+}
+
 /** `line 4`, `lines 4, 5 and 9`, `lines 4, 5, 6 and 17 more`. */
 export function lineWords(lines: number[], count = lines.length): string {
   const shown = lines.slice(0, 5);

@@ -9,7 +9,7 @@ import { displayText } from './display-text.ts';
 import { findHeader, type Header } from './header.ts';
 import { buildLayout, type Layout } from './layout.ts';
 import { preambleEntries } from './preamble-entries.ts';
-import { lineWords, problem, refuse } from './problems.ts';
+import { condensed, lineWords, problem, refuse } from './problems.ts';
 import { RowScanner } from './row-scanner.ts';
 import { gatherSettings, type PreambleSettings } from './settings.ts';
 import { refuseForeignText } from './sniff.ts';
@@ -24,6 +24,7 @@ export type { ReadTrace } from './traces.ts';
 
 const PROGRESS_POINTS = 50_000;
 const BLOCKS_PER_TURN = 8;
+const MOST_TRACES = 4096;
 
 export interface ReadResult {
   /** At least one, each with at least two points. */
@@ -310,6 +311,13 @@ export async function readTraceFile(
     problems.push(...made.problems, ...(index === 0 ? [] : own.problems));
     const extra = index === 0 ? {} : differing(own.settings, first);
     traces.push(...made.traces.map((trace) => ({ ...trace, settings: { ...extra, ...trace.settings } })));
+    if (traces.length > MOST_TRACES)
+      refuse(
+        'tooManyTraces',
+        `By line ${block.firstLine} the file holds more than 4,096 traces, the most that are read.`,
+        'Export fewer traces per file.',
+        block.firstLine,
+      );
     if (block.interruptions.length > 0)
       problems.push(
         problem(
@@ -353,7 +361,7 @@ export async function readTraceFile(
   return {
     traces: named,
     settings: stated.settings,
-    problems,
+    problems: condensed(problems),
     understanding: understand(file.encoding, planned, scanned, named, axisWords),
   };
 }

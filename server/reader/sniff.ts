@@ -89,8 +89,8 @@ function refuseZip(head: Uint8Array): never {
   refuse('archive', 'This is a zip archive, not a trace export.', 'Unpack it and drop the CSV inside.');
 }
 
-/** Share of bytes that no text has: control characters besides tab, line ends, form feed and a trailing NUL or ^Z. */
-function binaryShare(head: Uint8Array): number {
+/** Bytes that no text has: control characters besides tab, line ends, form feed and a trailing NUL or ^Z. */
+function controlBytes(head: Uint8Array): { count: number; share: number } {
   let end = head.length;
   while (end > 0 && (head[end - 1] === 0 || head[end - 1] === 0x1a)) end -= 1;
   let control = 0;
@@ -98,7 +98,7 @@ function binaryShare(head: Uint8Array): number {
     const byte = head[i];
     if (byte < 32 && byte !== 9 && byte !== 10 && byte !== 13 && byte !== 12 && byte !== 27) control += 1;
   }
-  return end === 0 ? 0 : control / end;
+  return { count: control, share: end === 0 ? 0 : control / end };
 }
 
 /**
@@ -117,8 +117,8 @@ export function refuseForeignBytes(head: Uint8Array, wide: boolean): void {
   const magic = MAGIC.find((candidate) => startsWith(head, candidate));
   if (magic) refuse(magic.code, `This is ${magic.what}, not a trace export.`, magic.advice);
   if (startsWith(head, { bytes: [0x50, 0x4b, 0x03, 0x04], what: '', code: '', advice: '' })) refuseZip(head);
-  const share = binaryShare(head);
-  if (share > 0.01)
+  const { count, share } = controlBytes(head);
+  if (share > 0.1 || (share > 0.01 && count > 8))
     refuse(
       'binary',
       `This is a binary file, not text: ${Math.round(share * 100)} % of its first ${head.length} bytes are control codes.`,
@@ -144,7 +144,9 @@ export function refuseForeignText(head: string): void {
     );
   if (/^<\?xml|^<[a-z][\w:-]*[\s>/]/i.test(start))
     refuse('markup', 'This is an XML document, not a trace table.', EXPORT, 1);
-  const option = /^\s*#\s*(?:[kmg]?hz)\s+[syzgh]\s+(?:ma|db|ri)\b/im.exec(head.slice(0, 65536));
+  const option = /^[ \t]{0,8}#[ \t]*(?:[kmg]?hz)[ \t]+[syzgh][ \t]+(?:ma|db|ri)\b/im.exec(
+    head.slice(0, 65536),
+  );
   if (option)
     refuse(
       'networkParameters',

@@ -122,9 +122,11 @@ function continues(before: Run, run: Run, { decimalMark }: Reading): boolean {
   });
 }
 
+const longestOf = (runs: Run[]) => runs.reduce((longest, { rows }) => Math.max(longest, rows.length), 0);
+
 /** The first run that is the data, not a small table above it. */
 function dataRun(runs: Run[], reading: Reading): Run {
-  const longest = Math.max(...runs.map(({ rows }) => rows.length));
+  const longest = longestOf(runs);
   let index = runs.findIndex(({ rows }) => rows.length >= Math.min(longest / 2, BIG_ENOUGH));
   while (index > 0 && continues(runs[index - 1], runs[index], reading)) index -= 1;
   return runs[index];
@@ -192,9 +194,7 @@ function bestReading(lines: string[]): { reading: Reading; run: Run } | null {
     const runs = runsOf(lines, reading);
     if (runs.length === 0) continue;
     const run = dataRun(runs, reading);
-    const rows = Math.max(
-      ...runs.filter(({ columns }) => columns === run.columns).map((one) => one.rows.length),
-    );
+    const rows = longestOf(runs.filter(({ columns }) => columns === run.columns));
     const axis = Array.from({ length: Math.min(run.columns, 3) }, (_, column) => column).some((column) =>
       strictlyMonotonic(run.rows.slice(0, 50), column, reading.decimalMark),
     );
@@ -222,6 +222,20 @@ function refuseGroupedNumbers(lines: string[]): void {
   );
 }
 
+function hasTooManyColumns(line: string): boolean {
+  if (line.length <= MOST_COLUMNS) return false;
+  return [',', ';', '\t', '|'].some((delimiter) => {
+    let count = 0;
+    for (
+      let at = line.indexOf(delimiter);
+      at >= 0 && count < MOST_COLUMNS;
+      at = line.indexOf(delimiter, at + 1)
+    )
+      count += 1;
+    return count >= MOST_COLUMNS;
+  });
+}
+
 /**
  * Finds the rows of numbers in the head of a file: what parts the cells, the decimal mark, where they begin.
  * @param lines the head's lines
@@ -229,9 +243,7 @@ function refuseGroupedNumbers(lines: string[]): void {
  * @throws UnreadableFile where the marks can be read in two ways, or over 4,096 columns
  */
 export function findStructure(lines: string[]): Structure | null {
-  const wide = lines.findIndex(
-    (line) => line.length > MOST_COLUMNS && /(?:[^,;\t|]*[,;\t|]){4096}/.test(line),
-  );
+  const wide = lines.findIndex(hasTooManyColumns);
   if (wide >= 0)
     refuse(
       'tooManyColumns',

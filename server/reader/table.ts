@@ -6,6 +6,7 @@ import { commentText, isBlankLine, splitLine, withoutEmptyTail } from './split-l
 import type { ScanLayout } from './row-scanner.ts';
 
 const MOST_KEPT_LINES = 2000;
+const MOST_KEPT_IN_ALL = 50_000;
 const MOST_ANCHORS = 200_000;
 const MOST_SEGMENTS = 20_000;
 
@@ -47,6 +48,7 @@ export class Table {
   private before: Segment['before'] = [];
   private broken = lost();
   private textSince = true;
+  private kept = 0;
 
   constructor(
     private readonly layout: ScanLayout,
@@ -142,7 +144,9 @@ export class Table {
       this.broken = lost();
     }
     this.textSince = true;
-    if (this.before.length < MOST_KEPT_LINES) this.before.push({ text: text.slice(0, 400), line });
+    if (this.before.length >= MOST_KEPT_LINES || this.kept >= MOST_KEPT_IN_ALL) return;
+    this.kept += 1;
+    this.before.push({ text: text.slice(0, 400), line });
   }
 
   /** Values of the wanted columns, NaN where a cell has none; null where the line is no row. */
