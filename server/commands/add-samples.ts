@@ -2,9 +2,9 @@
 import { createHash } from 'node:crypto';
 import { readdirSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
+import { Client } from 'pg';
 import { z } from 'zod';
 import { projectFolder } from '../config.ts';
-import { createDataSource } from '../database.ts';
 import { uploadSamples } from '../services/upload-samples.ts';
 
 const PATIENCE_MS = 60_000;
@@ -19,9 +19,10 @@ const hashes = readdirSync(folder)
       .digest('hex'),
   );
 
-const dataSource = await createDataSource(z.string().parse(process.env.DATABASE_URL), 1).initialize();
+const database = new Client({ connectionString: z.string().parse(process.env.DATABASE_URL) });
+await database.connect();
 const count = async (condition: string) => {
-  const rows: unknown = await dataSource.query(
+  const { rows } = await database.query(
     `SELECT count(DISTINCT sha256)::int AS count FROM capture WHERE sha256 = ANY($1) AND ${condition}`,
     [hashes],
   );
@@ -34,4 +35,4 @@ if ((await count('true')) < hashes.length) {
     await new Promise((resolve) => setTimeout(resolve, 100));
   }
 }
-await dataSource.destroy();
+await database.end();
