@@ -75,6 +75,7 @@ export function estimateDensity(input: EstimateInput): EngineEstimate {
       : Math.max(axis.spacingHz, 1e-9),
     sweepTimeS: values.sweepTimeS,
     vbwHz: values.vbwHz,
+    videoSmoothed: stated.stages.some(({ place }) => place === 'video'),
     declaredLaw: stated.unknown.length === 0 && stated.scale !== null ? pointLaw(stated.stages) : null,
     scale,
     exclusions: input.exclusions,

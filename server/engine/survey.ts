@@ -21,6 +21,8 @@ export interface SurveyInput {
   filterWidthHz: number;
   sweepTimeS: number | undefined;
   vbwHz: number | undefined;
+  /** True where a video filter averages within a sweep. */
+  videoSmoothed: boolean;
   /** Law that the settings declare; null: they leave it open. */
   declaredLaw: PointLaw | null;
   scale: Scale;
@@ -66,10 +68,15 @@ export function surveyTrace(input: SurveyInput): Survey | null {
         filterWidthHz,
         spacingHz,
         falseAlarm: options.falseAlarm,
+        videoSmoothed: input.videoSmoothed,
         excluded: applyExclusions(frequencyHz, [], [], band).leftOut,
         roundingDb: input.quantizationStepDb ?? undefined,
       })
-    : { spurs: [], truncationBiasDb: 0 };
+    : {
+        spurs: [],
+        truncationBiasDb: 0,
+        floorPower: new Float64Array(powerMw.length).fill(meanOfKept(powerMw, person)),
+      };
   const { leftOut, exclusions, spanLeftOut } = applyExclusions(
     frequencyHz,
     search.spurs,
@@ -91,8 +98,7 @@ export function surveyTrace(input: SurveyInput): Survey | null {
     for (let i = 0; i < powerMw.length; i += 1) residual[i] = (powerMw[i] - fitted[i]) / meanPowerMw;
     return residual;
   };
-  const flat = new Float64Array(powerMw.length).fill(meanPowerMw);
-  const first = effectiveIndependentPoints(about(flat), leftOut, bounds);
+  const first = effectiveIndependentPoints(about(search.floorPower), leftOut, bounds);
   const shape = floorShape({
     powerMw,
     frequencyHz,
@@ -102,8 +108,7 @@ export function surveyTrace(input: SurveyInput): Survey | null {
     filterWidthHz,
     tau: first.tau,
   });
-  const independent =
-    shape.model === 'level' ? first : effectiveIndependentPoints(about(shape.fittedPower), leftOut, bounds);
+  const independent = effectiveIndependentPoints(about(shape.fittedPower), leftOut, bounds);
   const ripple = input.uniform ? findRipple(powerMw, frequencyHz, leftOut, filterWidthHz) : null;
   return {
     leftOut,

@@ -1,7 +1,5 @@
-import { randomBytes } from 'node:crypto';
 import { createServer, type Server } from 'node:http';
 import { runOnce, Logger as QueueLogger } from 'graphile-worker';
-import { Client } from 'pg';
 import { pino } from 'pino';
 import type { Express } from 'express';
 import { vi } from 'vitest';
@@ -9,12 +7,12 @@ import { z } from 'zod';
 import { createApp } from '../../server/app.ts';
 import { readConfig } from '../../server/config.ts';
 import { taskList } from '../../server/jobs/task-list.ts';
-import { migrate } from '../../server/migrate.ts';
 import type { Context } from '../../server/services/context.ts';
 import { closeContext, openContext } from '../../server/services/open-context.ts';
 import { DEMO_PASSWORD, seedDemo } from '../../server/services/seed-demo.ts';
 import { UploadItem } from '../../shared/capture.ts';
 import { Session } from '../../shared/session.ts';
+import { createTestDatabase } from './database.ts';
 
 vi.setConfig({ testTimeout: 30_000, hookTimeout: 60_000 });
 
@@ -95,31 +93,6 @@ export interface TestApp {
   /** SQL as the application's own user. */
   sql<T>(query: string, parameters?: unknown[]): Promise<T[]>;
   close(): Promise<void>;
-}
-
-/** The cluster that `npm test` started. */
-function clusterUrl(): URL {
-  const url = process.env.DATABASE_URL;
-  if (!url)
-    throw new Error('Set DATABASE_URL to a throw-away PostgreSQL cluster, or run the tests by npm test.');
-  return new URL(url);
-}
-
-async function inCluster(sql: string): Promise<void> {
-  const client = new Client({ connectionString: clusterUrl().href });
-  await client.connect();
-  await client.query(sql);
-  await client.end();
-}
-
-/** A migrated, seeded database of its own. */
-export async function createTestDatabase(): Promise<{ url: string; drop: () => Promise<void> }> {
-  const name = `perhertz_test_${randomBytes(6).toString('hex')}`;
-  await inCluster(`CREATE DATABASE ${name}`);
-  const url = clusterUrl();
-  url.pathname = `/${name}`;
-  await migrate(url.href);
-  return { url: url.href, drop: () => inCluster(`DROP DATABASE ${name} WITH (FORCE)`) };
 }
 
 const listen = (server: Server) =>

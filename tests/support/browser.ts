@@ -1,4 +1,4 @@
-import { existsSync } from 'node:fs';
+import { existsSync, readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { chromium, type Browser, type BrowserContext, type Page } from 'playwright-core';
 import { inject } from 'vitest';
@@ -66,14 +66,11 @@ export async function signIn(page: Page, who: Who, path = '/captures'): Promise<
   await page.getByRole('heading', { level: 1 }).filter({ hasNotText: 'Sign in' }).waitFor();
 }
 
-const axePath = createRequire(import.meta.url).resolve('axe-core/axe.min.js');
+const axeSource = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8');
 
 /** Serious and critical faults that axe-core finds on a page, as `rule: element`. */
 export async function seriousFaults(page: Page): Promise<string[]> {
-  await page.addScriptTag({ path: axePath }).catch(async () => {
-    const { readFileSync } = await import('node:fs');
-    await page.evaluate(readFileSync(axePath, 'utf8'));
-  });
+  await page.evaluate(axeSource);
   return page.evaluate(async () => {
     const axe: {
       run: (

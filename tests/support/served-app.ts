@@ -6,7 +6,7 @@ import { startApplication } from '../../server/commands/lib/application.mjs';
 import { buildApplication } from '../../server/commands/lib/build.mjs';
 import { Ending } from '../../server/commands/lib/ending.mjs';
 import { freePort } from '../../server/commands/lib/ports.mjs';
-import { createTestDatabase } from './api.ts';
+import { createTestDatabase } from './database.ts';
 
 declare module 'vitest' {
   export interface ProvidedContext {
