@@ -53,6 +53,8 @@ interface Row {
 
 interface Run {
   columns: number;
+  /** True where some cells are dates or other text: a wrong delimiter leaves such cells too. */
+  text: boolean;
   rows: Row[];
 }
 
@@ -81,7 +83,7 @@ function settled(rows: (Row & { sign: string })[]): Run {
   const [common] = [...counts].sort((a, b) => b[1] - a[1])[0];
   const first = rows.findIndex(({ sign }) => sign === common);
   const last = rows.findLastIndex(({ sign }) => sign === common);
-  return { columns: common.length, rows: rows.slice(first, last + 1) };
+  return { columns: common.length, text: common.includes('T'), rows: rows.slice(first, last + 1) };
 }
 
 /** Runs of rows of numbers; blank and comment lines don't end a run, other text does. */
@@ -200,6 +202,7 @@ function bestReading(lines: string[]): { reading: Reading; run: Run } | null {
     );
     let score = rows;
     if (run.columns > 1) score *= axis ? 1.5 : 1.2;
+    if (run.text) score *= 0.6;
     if (looksLikeCutDecimals(run, reading)) score *= 0.5;
     if (reading.delimiter === hint) score *= 3;
     if (reading.decimalMark === ',') score *= 0.99;
