@@ -13,8 +13,8 @@ export interface Cell {
   fits?: AveragingCheck['fits'];
   /** Error of the density if the declaration were believed, published or from the simulator, dB. */
   levelErrorDb?: number;
-  /** What is judged of the density: its interval, nothing (wrong or missing declaration), or that none is given. */
-  density: 'interval' | 'ignored' | 'refused';
+  /** What is judged of the density: its interval; nothing (wrong or missing declaration); that it is stopped. */
+  density: 'interval' | 'ignored' | 'stopped';
 }
 
 type Changes = Partial<CaptureSpec> & {
@@ -303,7 +303,7 @@ const silentCells: Cell[] = [
   ),
   cell('power20-no-count', {}, { says: { sweeps: undefined }, verdict: 'undetermined', density: 'ignored' }),
   cell('power1-no-time', { sweeps: 1 }, { says: { sweepTimeS: undefined } }),
-  cell('peak10', { detector: 'peak', sweeps: 1, dwell: 10, points: 401 }, { density: 'refused' }),
+  cell('peak10', { detector: 'peak', sweeps: 1, dwell: 10, points: 401 }, { density: 'stopped' }),
 ];
 
 export const cells: Cell[] = [...cleanCells, ...burdenedCells, ...wrongCells, ...silentCells];

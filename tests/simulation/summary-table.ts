@@ -23,7 +23,8 @@ export function complaints(cell: Cell, summary: Summary): string[] {
     }
     if ((summary.widthRatio ?? 0) > 1.25) words.push('wide');
   }
-  if (cell.density === 'refused' && given > 0) words.push(`${given} with density`);
+  if (cell.density === 'stopped' && summary.stopped < captures)
+    words.push(`${captures - summary.stopped} not stopped`);
   const spurLimit = binomialLimits(captures, 0.01, RISK).high;
   if (summary.capturesWithFalseSpurs > spurLimit) words.push(`false spurs above ${spurLimit}`);
   if (summary.rightVerdicts < captures) words.push('verdicts');

@@ -23,6 +23,8 @@ export interface Summary {
   capturesWithFalseSpurs: number;
   missedSpurs: number;
   largestLedgerGapDb: number;
+  /** Captures with a stop finding, and which. */
+  stopped: number;
   stops: Record<string, number>;
   engineMs: number;
 }
@@ -73,6 +75,7 @@ export function summarise(cell: Cell, trials: Trial[]): Summary {
     capturesWithFalseSpurs: trials.filter(({ falseSpurs }) => falseSpurs > 0).length,
     missedSpurs: trials.reduce((sum, { missedSpurs }) => sum + missedSpurs, 0),
     largestLedgerGapDb: Math.max(...trials.map(({ ledgerGapDb }) => ledgerGapDb)),
+    stopped: trials.filter(({ stops }) => stops.length > 0).length,
     stops: tally(trials.flatMap(({ stops }) => stops)),
     engineMs: mean(trials.map(({ engineMs }) => engineMs)) ?? 0,
   };
