@@ -72,11 +72,9 @@ export function madeAxis(
 /** Sign of the direction in which most of the axis runs. */
 function direction(axis: Float64Array): number {
   let balance = 0;
-  let before = Number.NaN;
-  for (const value of axis) {
-    if (value > before) balance += 1;
-    else if (value < before) balance -= 1;
-    before = value;
+  for (let i = 1; i < axis.length; i += 1) {
+    if (axis[i] > axis[i - 1]) balance += 1;
+    else if (axis[i] < axis[i - 1]) balance -= 1;
   }
   return balance < 0 ? -1 : 1;
 }

@@ -99,7 +99,7 @@ export function checkLevels(level: Float64Array, name: string): ReaderProblem[] 
       ),
     ];
   let atLowest = 0;
-  for (const value of level) if (value === lowest) atLowest += 1;
+  for (let i = 0; i < level.length; i += 1) if (level[i] === lowest) atLowest += 1;
   if (atLowest > 10 && atLowest > 0.05 * level.length && highest - lowest > 3)
     return [
       problem(

@@ -26,7 +26,8 @@ export function toDbm(numbers: Float64Array, scale: LevelScale, impedanceOhm: nu
 export function levelRange(level: Float64Array): { lowest: number; highest: number } {
   let lowest = Number.POSITIVE_INFINITY;
   let highest = Number.NEGATIVE_INFINITY;
-  for (const value of level) {
+  for (let i = 0; i < level.length; i += 1) {
+    const value = level[i];
     if (value < lowest) lowest = value;
     if (value > highest) highest = value;
   }

@@ -12,7 +12,7 @@ export function withoutGaps(frequencyHz: Float64Array, level: Float64Array): Poi
   let kept = 0;
   for (let i = 0; i < level.length; i += 1)
     if (!Number.isNaN(level[i]) && !Number.isNaN(frequencyHz[i])) kept += 1;
-  if (kept === level.length) return { frequencyHz: frequencyHz.slice(), level };
+  if (kept === level.length) return { frequencyHz, level };
   const points = { frequencyHz: new Float64Array(kept), level: new Float64Array(kept) };
   let at = 0;
   for (let i = 0; i < level.length; i += 1) {

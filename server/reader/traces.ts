@@ -55,7 +55,8 @@ function strided(values: Float64Array, { fromRow, toRow, every }: Stretch): Floa
 }
 
 function allZero(values: Float64Array): boolean {
-  return values.every((value) => value === 0 || Number.isNaN(value));
+  for (let i = 0; i < values.length; i += 1) if (values[i] !== 0 && !Number.isNaN(values[i])) return false;
+  return true;
 }
 
 /** Says where points were left out; refuses when they are more than a tenth. */
