@@ -22,10 +22,9 @@ async function start(ending) {
   requireNode();
   const afterCrash = beTheOnlyOne(ending, dataFolder);
   const port = await chosenPort(process.env.PORT, host, afterCrash);
-  await installNodePackages(ending);
   const [databaseUrl] = await Promise.all([
     process.env.DATABASE_URL ?? startCluster(ending, dataFolder).then(({ url }) => url),
-    dev ? null : buildApplication(ending),
+    installNodePackages(ending).then(() => (dev ? undefined : buildApplication(ending))),
   ]);
   tell('Starting web and worker …');
   const logFolder = production ? null : join(dataFolder, 'log');

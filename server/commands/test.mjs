@@ -1,7 +1,7 @@
 #!/usr/bin/env node
 // Runs the tests on a throw-away database cluster: `npm test`, or `npm test -- tests/api` for some of them.
 import { spawn } from 'node:child_process';
-import { chmodSync, mkdtempSync, writeFileSync } from 'node:fs';
+import { chmodSync, mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { provideChromium } from './lib/chromium.mjs';
@@ -19,27 +19,28 @@ const paths = args.filter((arg) => !arg.startsWith('-'));
 /** @param {Ending} ending */
 async function test(ending) {
   requireNode();
-  await installNodePackages(ending);
   const browser = paths.length === 0 || paths.some((path) => /browser|tests\/?$/.test(path));
-  const chromium = browser ? await provideChromium(ending) : '';
   const run = mkdtempSync(join(tmpdir(), 'perhertz-test-'));
+  ending.add(() => rmSync(run, { recursive: true, force: true }));
   chmodSync(run, 0o711);
   writeFileSync(join(run, 'supervisor.pid'), `${process.pid}\n`);
   await sweepOldRuns(tmpdir(), run);
-  tell('Starting a throw-away database …');
-  const { url } = await startCluster(ending, run, { throwAway: true });
+  /** @param {string} chromium */
+  const environment = async (chromium) => {
+    tell('Starting a throw-away database …');
+    const { url } = await startCluster(ending, run, { throwAway: true });
+    return { NODE_ENV: 'test', DATABASE_URL: url, PERHERTZ_CHROMIUM: chromium, PERHERTZ_TEST_RUN: run };
+  };
+  const [env] = await Promise.all([
+    (browser ? provideChromium(ending) : Promise.resolve('')).then(environment),
+    installNodePackages(ending),
+  ]);
   const vitest = spawn(
     process.execPath,
     [join(projectFolder, 'node_modules/vitest/vitest.mjs'), 'run', ...args],
     {
       cwd: projectFolder,
-      env: {
-        ...process.env,
-        NODE_ENV: 'test',
-        DATABASE_URL: url,
-        PERHERTZ_CHROMIUM: chromium,
-        PERHERTZ_TEST_RUN: run,
-      },
+      env: { ...process.env, ...env },
       detached: true,
       stdio: ['ignore', 'inherit', 'inherit'],
     },

@@ -38,13 +38,13 @@ const client = {
 
 /**
  * @param {string} path
- * @returns {string[]} every file below it.
+ * @returns {string[]} every file below it that is built.
  */
 function filesBelow(path) {
   if (!existsSync(path)) return [];
   if (!statSync(path).isDirectory()) return [path];
   return readdirSync(path, { recursive: true, withFileTypes: true })
-    .filter((entry) => entry.isFile())
+    .filter((entry) => entry.isFile() && !entry.name.endsWith('.mjs'))
     .map((entry) => join(entry.parentPath, entry.name));
 }
 
