@@ -17,6 +17,10 @@ const presentSession = ({ personId, name, email, labs }: Actor): Session => ({
   labs: labs.map((lab) => ({ id: lab.id, name: lab.name, role: lab.role })),
 });
 
+/** Tells the page, which can't see the session cookie, that asking who is signed in makes sense. Opens nothing by itself. */
+const SIGNED_IN_HINT = 'perhertz_signed_in';
+const HINT_MS = 7 * 24 * 3600 * 1000;
+
 const called = (run: (done: (error: unknown) => void) => void) =>
   new Promise<void>((resolve, reject) => run((error) => (error ? reject(error) : resolve())));
 
@@ -24,6 +28,7 @@ const called = (run: (done: (error: unknown) => void) => void) =>
 export function sessionRoutes({ config, dataSource, sessionPool }: Context): Router {
   const router = Router();
   const limits = signInLimits(sessionPool);
+  const hintOptions = { path: '/', secure: config.secureCookies, sameSite: 'lax' } as const;
   const strategy = new Strategy({ usernameField: 'email' }, (email, password, done) => {
     checkPassword(dataSource, email, password).then(
       (personId) => done(null, personId ?? false),
@@ -66,6 +71,7 @@ export function sessionRoutes({ config, dataSource, sessionPool }: Context): Rou
       request.session.personId = actor.personId;
       request.session.signedInAt = Date.now();
       await called((done) => request.session.save(done));
+      response.cookie(SIGNED_IN_HINT, '1', { ...hintOptions, maxAge: HINT_MS });
       response.json(presentSession(actor));
     },
   );
@@ -82,6 +88,7 @@ export function sessionRoutes({ config, dataSource, sessionPool }: Context): Rou
       httpOnly: true,
       sameSite: 'lax',
     });
+    response.clearCookie(SIGNED_IN_HINT, hintOptions);
     response.status(204).end();
   });
 

@@ -46,7 +46,10 @@ class SignedIn {
       body: JSON.stringify({ email, password: DEMO_PASSWORD }),
     });
     if (!response.ok) throw new Error(`${email} can’t sign in to add samples: ${await response.text()}`);
-    const cookie = (response.headers.getSetCookie()[0] ?? '').split(';')[0];
+    const cookie = response.headers
+      .getSetCookie()
+      .map((set) => set.split(';')[0])
+      .join('; ');
     const { labs } = Session.parse(await response.json());
     const [lab] = labs;
     if (!lab) throw new Error(`${email} is in no lab, so no samples can be added.`);

@@ -4,10 +4,14 @@ import { ApiProblem, command, request } from './http.ts';
 
 export const sessionKey = ['session'] as const;
 
-/** Who is signed in; null where nobody is. */
+/** The server leaves this readable cookie beside the session's own, which no script can see. */
+const mayBeSignedIn = () => document.cookie.split('; ').includes('perhertz_signed_in=1');
+
+/** Who is signed in; null where nobody is. Asks only where somebody may be. */
 export const sessionOptions = queryOptions({
   queryKey: sessionKey,
   queryFn: async ({ signal }): Promise<Session | null> => {
+    if (!mayBeSignedIn()) return null;
     try {
       return await request(Session, '/api/session', { signal, recover: false });
     } catch (error) {

@@ -4,7 +4,7 @@ import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { z } from 'zod';
 import { Capture, Campaign, UploadItem } from '../../shared/capture.ts';
 import { page, Problem } from '../../shared/problem.ts';
-import { createTestApp, until, uploadForm, type TestApp } from '../support/api.ts';
+import { createTestApp, until, uploadForm, type TestApp, cookiesOf } from '../support/api.ts';
 import { traceCsv } from '../support/trace-csv.ts';
 
 const MIB = 1024 * 1024;
@@ -224,7 +224,7 @@ describe('an upload that goes wrong', () => {
     const response = await app.nobody.call('POST', '/api/session', {
       json: { email: 'technician@harbourbench.example', password: 'quiet-floor-demo' },
     });
-    const cookie = response.headers.getSetCookie()[0].split(';')[0];
+    const cookie = cookiesOf(response);
     const socket = connect(Number(port), '127.0.0.1');
     socket.on('error', () => {});
     socket.write(

@@ -15,6 +15,6 @@ export async function dropFiles(page: Page, selector: string, files: Record<stri
     await page.dispatchEvent(selector, type, { dataTransfer });
 }
 
-/** Without the browser's own line about a 401: asking who is signed in and a wrong password are answered so. */
+/** Without the browser's own line about a 401: a wrong password is answered so. */
 export const unexpected = (complaints: string[]): string[] =>
   complaints.filter((text) => !text.includes('the server responded with a status of 401'));

@@ -26,6 +26,13 @@ export const EMAILS = {
 } as const;
 export type Who = keyof typeof EMAILS;
 
+/** The cookies that an answer sets, as a request sends them back. */
+export const cookiesOf = (response: Response): string =>
+  response.headers
+    .getSetCookie()
+    .map((cookie) => cookie.split(';')[0])
+    .join('; ');
+
 interface CallOptions {
   json?: unknown;
   body?: BodyInit;
@@ -128,7 +135,7 @@ export async function createTestApp(environment: Record<string, string> = {}): P
       json: { email: EMAILS[who], password: DEMO_PASSWORD },
     });
     const session = Session.parse(await response.json());
-    const cookie = (response.headers.getSetCookie()[0] ?? '').split(';')[0];
+    const cookie = cookiesOf(response);
     return { caller: new Caller(baseUrl, { Cookie: cookie }), labId: session.labs[0].id };
   };
   const known = (who: Who) => {
