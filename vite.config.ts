@@ -9,6 +9,12 @@ export default defineConfig({
   server: {
     host: process.env.HOST ?? '127.0.0.1',
     strictPort: true,
-    proxy: { '/api': process.env.PERHERTZ_API_URL ?? `http://127.0.0.1:${process.env.PORT ?? 4173}` },
+    proxy: {
+      '/api': {
+        target: process.env.PERHERTZ_API_URL ?? `http://127.0.0.1:${process.env.PORT ?? 4173}`,
+        // The server takes writes only from pages of its own host, so that it must see the browser's.
+        changeOrigin: false,
+      },
+    },
   },
 });

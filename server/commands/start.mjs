@@ -6,8 +6,8 @@ import { buildApplication } from './lib/build.mjs';
 import { startCluster } from './lib/cluster.mjs';
 import { runCommand } from './lib/ending.mjs';
 import { installNodePackages } from './lib/node-packages.mjs';
-import { addressOf, freePort } from './lib/ports.mjs';
-import { supervise } from './lib/processes.mjs';
+import { addressOf, freePort, tryPort } from './lib/ports.mjs';
+import { pause, supervise } from './lib/processes.mjs';
 import { dataFolder, keepSecret, projectFolder, requireNode, tell } from './lib/project.mjs';
 import { beTheOnlyOne, chosenPort } from './lib/one-instance.mjs';
 
@@ -46,6 +46,7 @@ async function start(ending) {
       log: null,
       tell,
     });
+    while (!ending.begun && !(await tryPort(port, host).then((free) => free === null))) await pause(100);
   } else if (logFolder) tell(`Logs are in ${logFolder}. Ctrl-C stops everything.`);
   tell(`Perhertz is ready at ${addressOf(host, port)}`);
 }
