@@ -19,6 +19,18 @@ const leaveWithParent = fileURLToPath(new URL('./leave-with-parent.mjs', import.
 export const pause = (ms) => new Promise((resolve) => setTimeout(resolve, ms));
 
 /**
+ * Waits for an end, but no longer than this.
+ * @param {Promise<unknown>} ended
+ * @param {number} ms
+ */
+async function waitAtMost(ended, ms) {
+  /** @type {NodeJS.Timeout | undefined} */
+  let timer;
+  await Promise.race([ended, new Promise((resolve) => (timer = setTimeout(resolve, ms)))]);
+  clearTimeout(timer);
+}
+
+/**
  * @param {string} text
  * @param {number} [count]
  */
@@ -68,7 +80,7 @@ export function runProgram(ending, program, args, { cwd, env, user, input, patie
     const ended = new Promise((resolve) => child.once('exit', resolve));
     const forget = ending.add(async () => {
       if (child.pid && !patient) signalGroup(child.pid, 'SIGTERM');
-      await Promise.race([ended, pause(patient ? 120_000 : PATIENCE_MS)]);
+      await waitAtMost(ended, patient ? 120_000 : PATIENCE_MS);
       if (child.pid) signalGroup(child.pid, 'SIGKILL');
     });
     child.once('error', (error) => {
@@ -168,7 +180,7 @@ export function supervise(ending, name, args, { env, log, tell }) {
     const pid = child?.pid;
     if (!pid) return;
     signalGroup(pid, 'SIGTERM');
-    await Promise.race([ended, pause(PATIENCE_MS)]);
+    await waitAtMost(ended, PATIENCE_MS);
     signalGroup(pid, 'SIGKILL');
     output?.end();
   });
