@@ -27,7 +27,7 @@ export default tseslint.config(
   { ignores: ['dist/**', 'node_modules/**', '.data/**'] },
   ...tseslint.configs.recommended,
   {
-    files: ['**/*.{ts,tsx}'],
+    files: ['**/*.{ts,tsx,mjs}'],
     plugins: { 'import-x': importX, 'react-hooks': reactHooks },
     rules: {
       'import-x/no-restricted-paths': ['error', { zones }],
