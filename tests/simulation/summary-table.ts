@@ -5,6 +5,8 @@ import type { Summary } from './summary.ts';
 const RISK = 0.001;
 /** A mean error this small is none, whatever its standard error. */
 const SMALL_ERROR_DB = 0.02;
+/** Width over the width that the errors' own spread asks for; the spread of few captures is itself uncertain. */
+const WIDEST = 1.1;
 
 const show = (value: number | null, decimals: number, sign = false) =>
   value === null ? '-' : `${sign && value >= 0 ? '+' : ''}${value.toFixed(decimals)}`;
@@ -21,7 +23,7 @@ export function complaints(cell: Cell, summary: Summary): string[] {
     if (meanErrorDb !== null && standardErrorDb !== null) {
       if (Math.abs(meanErrorDb) > Math.max(SMALL_ERROR_DB, 3.3 * standardErrorDb)) words.push('biased');
     }
-    if ((summary.widthRatio ?? 0) > 1.25) words.push('wide');
+    if ((summary.widthRatio ?? 0) > WIDEST * (1 + 3.3 / Math.sqrt(2 * given))) words.push('wide');
   }
   if (cell.density === 'stopped' && summary.stopped < captures)
     words.push(`${captures - summary.stopped} not stopped`);
