@@ -1,0 +1,32 @@
+import { useParams } from 'react-router-dom';
+import { useCapture } from '../../api/captures.ts';
+import { CaptureHeader } from './capture-header.tsx';
+import { FailedState } from './states/failed-state.tsx';
+import { LoadingState } from './states/loading-state.tsx';
+import { ReadingState } from './states/reading-state.tsx';
+import { UnreadableState } from './states/unreadable-state.tsx';
+import { Workbench } from './workbench.tsx';
+
+/** One capture: trace, ledger, averaging check, spurs, settings, findings and its estimates. */
+export function CapturePage() {
+  const { captureId = '' } = useParams();
+  const query = useCapture(captureId);
+  if (query.isPending) return <LoadingState />;
+  if (query.data === undefined) {
+    return <FailedState error={query.error} onRetry={() => void query.refetch()} />;
+  }
+  const capture = query.data;
+  if (capture.state === 'ready' || capture.state === 'needsSettings') {
+    return <Workbench key={capture.id} capture={capture} />;
+  }
+  return (
+    <>
+      <CaptureHeader capture={capture} />
+      {capture.state === 'unreadable' ? (
+        <UnreadableState capture={capture} />
+      ) : (
+        <ReadingState capture={capture} />
+      )}
+    </>
+  );
+}
