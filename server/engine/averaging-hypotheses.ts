@@ -6,6 +6,15 @@ import { pointLaw, type PointLaw, type Stage } from './point-law.ts';
 import { peakValuesSeen } from './peak-values.ts';
 import { detectorValuesSeen, relativeScatterUncertainty, sweepsSeen, type Residuals } from './scatter.ts';
 
+/** A peak detector's number of values is itself taken from the scatter, so the scatter can't speak for or against it. */
+const PEAK_VERDICT = {
+  verdict: 'undetermined',
+  fits: null,
+  summary: 'peak detector',
+  sentence: 'A peak detector keeps extremes; its scatter can’t tell how the trace was averaged.',
+  advice: 'Repeat the capture with the sample or the average (RMS) detector.',
+} as const;
+
 const SCALES: Scale[] = ['power', 'log', 'voltage'];
 
 /** A chain whose open numbers are filled in from the scatter. */
@@ -125,7 +134,7 @@ export function checkAveraging(
     scale: countScale,
     values: Number(seenAverages.toPrecision(3)),
   };
-  return averagingCheck({
+  const check = averagingCheck({
     residuals,
     candidates: all,
     declared: scale ?? (nothingAveraged ? (kept[0]?.id ?? null) : null),
@@ -143,4 +152,5 @@ export function checkAveraging(
     nothingAveraged,
     densityFor,
   });
+  return peak ? { ...check, ...PEAK_VERDICT } : check;
 }

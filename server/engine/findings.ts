@@ -130,7 +130,7 @@ const rules: Rule[] = [
       : null,
 
   ({ check, missing }) =>
-    check.verdict === 'undetermined' && !missing.includes('averagingScale')
+    check.verdict === 'undetermined' && check.fits !== null && !missing.includes('averagingScale')
       ? finding(
           'averaging-undetermined',
           'note',

@@ -71,7 +71,7 @@ export function floorShape(input: FloorShapeInput): FloorShape {
     excluded: mask,
     independentFraction: 1 / input.tau,
   });
-  const humps = local.blocks > 0;
+  const humps = local.blocks > 0 || local.degree > 2;
   const fittedPower = humps
     ? scaleToMean(local.floorPower, powerMw, mask)
     : evaluate(fit.coefficients, frequencyHz);
@@ -91,7 +91,7 @@ export function floorShape(input: FloorShapeInput): FloorShape {
     flat: !humps && model === 'level',
     rangeDb: DB_PER_NEPER * Math.log(highest / lowest),
     fittedPower,
-    parameters: humps ? 2 * local.blocks - 1 : fit.coefficients.length,
+    parameters: humps ? Math.max(2 * local.blocks - 1, local.degree + 1) : fit.coefficients.length,
     relativeVariance: relativeVarianceAbout(fittedPower, powerMw, mask),
   };
 }

@@ -33,6 +33,8 @@ export interface LocalFloor {
   cellsAt: Float64Array;
   /** Blocks between which the floor is interpolated; 0: a smooth trend over the whole span. */
   blocks: number;
+  /** Degree of the polynomial where it is a trend. */
+  degree: number;
 }
 
 interface BlockLevels {
@@ -95,6 +97,7 @@ export function robustFloor(
         return options.law.relativeVariance / spread;
       }),
       blocks: 0,
+      degree: trend.degree,
     };
   }
 
@@ -111,6 +114,7 @@ export function robustFloor(
     floorPower: evaluate(frequencyHz, interpolator(knots, curve)),
     cellsAt: new Float64Array(CELL_NODES).fill(Math.max(1, (independent / blocks) * efficiency)),
     blocks,
+    degree: curve.degree,
   };
 }
 
