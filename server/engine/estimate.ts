@@ -19,7 +19,7 @@ import {
   ownNoiseEntry,
 } from './ledger-entries.ts';
 import { noiseBandwidthRatio, threeDbWidthHz } from './noise-bandwidth.ts';
-import { pointLaw } from './point-law.ts';
+import { pointLaw, type PointLaw } from './point-law.ts';
 import { quantizationStepDb } from './scatter.ts';
 import { surveyTrace, type Survey } from './survey.ts';
 import { dbToPowers } from './units.ts';
@@ -64,7 +64,7 @@ export function estimateDensity(input: EstimateInput): EngineEstimate {
   const shape = values.filterShape ?? 'gaussian';
   const scale = values.averagingScale ?? 'power';
   const stated = chainOf(chainSettings);
-  const survey = surveyTrace({
+  const search = {
     powerMw,
     frequencyHz,
     spacingHz: axis.spacingHz,
@@ -81,7 +81,10 @@ export function estimateDensity(input: EstimateInput): EngineEstimate {
     exclusions: input.exclusions,
     options,
     quantizationStepDb: step,
-  });
+  };
+  const first = surveyTrace(search);
+  const fittingLaw = first && lawAgainstDeclaration(chainSettings, first);
+  const survey = fittingLaw ? surveyTrace({ ...search, declaredLaw: fittingLaw }) : first;
   const head = {
     engineVersion: ENGINE_VERSION,
     input: {
@@ -272,6 +275,19 @@ function walk(given: WalkInput): Omit<EngineEstimate, 'engineVersion' | 'input'>
       ownNoiseMarginDb: main.ownNoiseMarginDb,
     }),
   };
+}
+
+/**
+ * The law that the scatter fits where it contradicts the declared averaging: spurs are searched again with it, since a
+ * law that is too narrow takes noise for spurs. null: the declaration stands, or nothing fits.
+ */
+function lawAgainstDeclaration(chainSettings: ChainSettings, { residuals }: Survey): PointLaw | null {
+  const { averagingScale } = chainSettings;
+  if (averagingScale === undefined) return null;
+  const declared = resolveChain(chainSettings, averagingScale, residuals);
+  const { verdict, fits } = checkAveraging(chainSettings, declared, residuals, () => null);
+  if (verdict !== 'other' || fits === null || fits === 'otherCount') return null;
+  return fits === 'none' ? pointLaw([]) : resolveChain(chainSettings, fits, residuals).law;
 }
 
 /** Puts what was taken from the scatter among the settings, marked as assumed. */

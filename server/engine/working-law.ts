@@ -44,7 +44,7 @@ export function workingLaw(
     10 * Math.log10(sampleQuantile(ratios, count, MIDDLE) / sampleQuantile(ratios, count, LOWER));
   if (!(seenDb > 0)) return guess;
   const independent = count * Math.min(1, (stride * spacingHz) / filterWidthHz);
-  const tolerance = Math.max(0.12, 4 / Math.sqrt(independent));
+  const tolerance = Math.max(0.12, 3 / Math.sqrt(independent));
   if (declared && Math.abs(Math.log(seenDb / lowerSpreadDb(declared))) < tolerance) return declared;
   const values = solveFalling(
     (n) => lowerSpreadDb(pointLaw([{ place: 'sweeps', scale: 'power', values: n }])),
