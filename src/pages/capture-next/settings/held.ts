@@ -1,7 +1,7 @@
 import type { Capture } from '../../../../shared/capture.ts';
 import type { Estimate } from '../../../../shared/estimate.ts';
 import type { Origin, SettingName, Settings } from '../../../../shared/settings.ts';
-import { clock, dayAndTime } from '../../../lib/time.ts';
+import { clock, day, firstName } from '../../../lib/time.ts';
 import type { DraftControls } from '../contract.ts';
 
 export type Value = string | number | boolean;
@@ -71,7 +71,7 @@ export function originWords(origin: Origin | null, now: Date = new Date()): stri
       return origin.name;
     case 'person': {
       const today = new Date(origin.at).toDateString() === now.toDateString();
-      return `${origin.name}, ${today ? clock(origin.at) : dayAndTime(origin.at)}`;
+      return `${firstName(origin.name)}, ${today ? clock(origin.at) : day(origin.at)}`;
     }
     case 'command':
       return 'command line';

@@ -34,7 +34,7 @@ export function SettingsSection(props: SectionProps) {
               {...field}
               name="bandwidthRatio"
               uncertainty="bandwidthRatioUncertainty"
-              label={<Two first="Noise bandwidth" second="measured, over RBW" />}
+              label={<Two first="Bandwidth ratio" second="noise to RBW" />}
               words="Noise bandwidth over RBW"
             />
             <TypedField {...field} name="vbwHz" label="VBW" words="VBW" />
@@ -71,7 +71,7 @@ export function SettingsSection(props: SectionProps) {
             <TypedField
               {...field}
               name="levelUncertaintyDb"
-              label={<Two first="Level scale" second="standard uncertainty" />}
+              label={<Two first="Level scale" second="standard u" />}
               words="Level, standard uncertainty"
               wanted
             />
