@@ -1,10 +1,12 @@
 import { useParams } from 'react-router-dom';
+import type { Capture } from '../../../shared/capture.ts';
 import { useCapture } from '../../api/captures.ts';
 import { CaptureHeader } from './capture-header.tsx';
 import { FailedState } from './states/failed-state.tsx';
 import { LoadingState } from './states/loading-state.tsx';
 import { ReadingState } from './states/reading-state.tsx';
 import { UnreadableState } from './states/unreadable-state.tsx';
+import { Chip } from '../../components/ui/chip.tsx';
 import { Workbench } from './workbench.tsx';
 
 /** One capture: trace, ledger, averaging check, spurs, settings, findings and its estimates. */
@@ -21,7 +23,7 @@ export function CapturePage() {
   }
   return (
     <>
-      <CaptureHeader capture={capture} />
+      <CaptureHeader capture={capture} actions={<StateChip state={capture.state} />} />
       {capture.state === 'unreadable' ? (
         <UnreadableState capture={capture} />
       ) : (
@@ -29,4 +31,9 @@ export function CapturePage() {
       )}
     </>
   );
+}
+
+function StateChip({ state }: { state: Capture['state'] }) {
+  if (state === 'unreadable') return <Chip tone="bad">Unreadable</Chip>;
+  return <Chip>{state === 'received' ? 'Received' : 'Reading'}</Chip>;
 }

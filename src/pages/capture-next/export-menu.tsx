@@ -6,20 +6,11 @@ import { download } from '../../lib/csv.ts';
 import { ledgerTsv } from './ledger-tsv.ts';
 
 /** Takes the estimate away: whole as JSON, its trace as CSV, its ledger for a spreadsheet. */
-export function ExportMenu({
-  capture,
-  estimate,
-  side,
-}: {
-  capture: Capture;
-  estimate: Estimate | null;
-  side?: 'top' | 'bottom';
-}) {
+export function ExportMenu({ capture, estimate }: { capture: Capture; estimate: Estimate | null }) {
   const name = `${capture.number}-${estimate?.number ?? 'unsaved'}`;
   const id = estimate?.id ?? null;
   return (
     <Menu
-      side={side}
       trigger={<Button disabled={estimate === null}>Export</Button>}
       items={[
         {

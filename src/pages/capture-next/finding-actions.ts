@@ -21,7 +21,7 @@ const SPURS: readonly FindingAction[] = [{ words: 'See the spurs', section: 4 }]
 export const FINDING_ACTIONS: Readonly<Record<string, readonly FindingAction[]>> = {
   'no-points': [{ words: 'See the trace', section: 1 }],
   'rbw-not-stated': [field('rbwHz', 'Enter the RBW in §5')],
-  'scale-not-stated': AVERAGING,
+  'scale-not-stated': [AVERAGING[0], field('averagingScale', 'Say it in §5')],
   'scale-from-scatter': AVERAGING,
   'sweeps-not-stated': [field('sweeps', 'Enter the sweeps in §5')],
   'averaging-differs': AVERAGING,

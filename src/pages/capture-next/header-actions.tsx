@@ -57,6 +57,9 @@ function StateChip({
   pending,
 }: Pick<HeaderActionsProps, 'capture' | 'shown' | 'changed' | 'pending'>) {
   if (changed) return <Chip tone="warn">{pending ? 'Computing the change' : 'Unsaved change'}</Chip>;
+  if (capture.state === 'needsSettings' && shown?.id === capture.estimate?.id) {
+    return <Chip tone="warn">Needs settings</Chip>;
+  }
   const summary = capture.estimates.find(({ id }) => id === shown?.id);
   if (summary === undefined) return null;
   const { word, tone } = STATES[summary.state];

@@ -83,6 +83,9 @@ function Question({
                 onClick={() => draft.setSettings({ [name]: value })}
               >
                 {label}
+                {found === undefined && alternatives.length > 0 && (
+                  <span className="text-caption font-normal text-ink2">doesn’t fit the scatter</span>
+                )}
                 {found !== undefined && (
                   <span className="text-caption font-normal text-ink2">
                     gives{' '}

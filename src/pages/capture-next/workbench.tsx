@@ -11,7 +11,6 @@ import { CAPTURE_KEYS, useCaptureKeys } from './capture-keys.ts';
 import type { Highlight, SectionProps } from './contract.ts';
 import { Dock } from './dock.tsx';
 import { shownIdOf, withShown } from './draft-address.ts';
-import { ExportMenu } from './export-menu.tsx';
 import { FindingsSection } from './findings-section.tsx';
 import { HeaderActions, KeepButton } from './header-actions.tsx';
 import { KeptNote } from './kept-note.tsx';
@@ -98,11 +97,7 @@ export function Workbench({ capture }: { capture: Capture }) {
           <EstimatesSection key="7" capture={capture} shownId={shownId} onShow={show} />,
         ]}
       />
-      <Dock
-        estimate={shown.estimate}
-        pending={shown.pending}
-        action={changed ? keepButton : <ExportMenu capture={capture} estimate={shown.estimate} side="top" />}
-      />
+      <Dock estimate={shown.estimate} pending={shown.pending} action={changed ? keepButton : null} />
     </>
   );
 }
