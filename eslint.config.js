@@ -41,7 +41,12 @@ export default tseslint.config(
   },
   {
     files: ['shared/**/*.ts'],
-    rules: { 'no-restricted-imports': ['error', { patterns: [{ regex: '^(?!\\.|zod$)', message: 'shared imports only zod.' }] }] },
+    rules: {
+      'no-restricted-imports': [
+        'error',
+        { patterns: [{ regex: '^(?!\\.|zod$)', message: 'shared imports only zod.' }] },
+      ],
+    },
   },
   {
     files: ['server/engine/**/*.ts', 'server/reader/**/*.ts'],
