@@ -1,6 +1,6 @@
 import { readFile } from 'node:fs/promises';
 import type { Browser, Locator, Page } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { Capture, CaptureSummary } from '../../shared/capture.ts';
 import { page as pageOf } from '../../shared/problem.ts';
 import { decimalsFor, fixed } from '../../src/lib/format.ts';
@@ -20,6 +20,7 @@ beforeAll(async () => {
   browser = await launchBrowser();
   window_ = await visit(browser);
   page = window_.page;
+  page.setDefaultTimeout(15_000);
   await signIn(page, 'engineer');
   for (const name of [SAMPLE, NEEDS_SETTING, UNREADABLE]) await upload(name);
 });
@@ -46,9 +47,7 @@ async function upload(name: string): Promise<void> {
     multipart: { files: { name, mimeType: 'text/csv', buffer } },
   });
   expect(answer.ok()).toBe(true);
-  await expect
-    .poll(async () => (await known(name)).state, { timeout: 30_000 })
-    .not.toMatch(/received|reading/);
+  await vi.waitFor(async () => expect((await known(name)).state).not.toMatch(/received|reading/), 30_000);
 }
 
 const section = (name: string) => page.getByRole('region', { name, exact: true });
@@ -173,9 +172,10 @@ describe('a capture', () => {
   });
 
   it('jumps to sections by number and from a finding to its setting', async () => {
+    await open(NEEDS_SETTING);
+    await section('Findings').waitFor();
     await page.keyboard.press('6');
-    const heading = () => page.evaluate(() => document.activeElement?.textContent);
-    await expect.poll(heading).toBe('Findings');
+    await expect.poll(() => page.evaluate(() => document.activeElement?.textContent)).toBe('Findings');
     await section('Findings').getByRole('button', { name: 'State the shape in §5' }).click();
     const focused = () => page.evaluate(() => document.activeElement?.getAttribute('aria-label'));
     await expect.poll(focused).toBe('Filter shape');
