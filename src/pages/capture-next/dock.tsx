@@ -1,6 +1,6 @@
 import type { ReactNode } from 'react';
 import type { Estimate } from '../../../shared/estimate.ts';
-import { level, uncertainty } from '../../lib/format.ts';
+import { decimalsFor, fixed, uncertainty } from '../../lib/format.ts';
 
 /** On phones: the density and the primary action at the foot of the window. */
 export function Dock({
@@ -26,7 +26,7 @@ export function Dock({
         ) : (
           <div className="font-mono whitespace-nowrap">
             <span className={pending ? 'text-[24px] leading-7' : 'text-[24px] leading-7 text-est'}>
-              {level(density.dbmPerHz, density.expandedUncertaintyDb)}
+              {fixed(density.dbmPerHz, Math.max(2, decimalsFor(density.expandedUncertaintyDb)))}
             </span>{' '}
             <span className="text-caption text-ink2">± {uncertainty(density.expandedUncertaintyDb)}</span>
           </div>
