@@ -7,7 +7,7 @@ import { CaptureRow, Tick } from './capture-row.tsx';
 import { columnsFor, features, GROUP_HEIGHT, padding, RIGHT, ROW_HEIGHT, widthOf } from './columns.tsx';
 import { useRowWindow } from './use-row-window.ts';
 import type { Group, Item, TableRow } from './rows.ts';
-import { WhiskerAxis, type Axis } from './whisker.tsx';
+import { WhiskerAxis, type Axis } from '../../components/plot/whisker.tsx';
 
 const getRowId = ({ capture }: TableRow) => capture.id;
 

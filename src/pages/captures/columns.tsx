@@ -9,7 +9,7 @@ import { firstName, fullTime, shortTime } from '../../lib/time.ts';
 import { densityOf, type TableRow } from './rows.ts';
 import { Sparkline } from './sparkline.tsx';
 import { rowState } from './state-words.ts';
-import { Whisker } from './whisker.tsx';
+import { Whisker } from '../../components/plot/whisker.tsx';
 
 export const features = tableFeatures({});
 const helper = createColumnHelper<typeof features, TableRow>();

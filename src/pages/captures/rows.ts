@@ -1,6 +1,6 @@
 import type { Campaign, CaptureSummary } from '../../../shared/capture.ts';
 import { countWords, fixed, NBSP } from '../../lib/format.ts';
-import { axisOf, type Axis } from './whisker.tsx';
+import { axisOf, type Axis } from '../../components/plot/whisker.tsx';
 
 export interface TableRow {
   capture: CaptureSummary;
