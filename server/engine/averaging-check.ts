@@ -33,12 +33,18 @@ export interface AveragingCheckInput {
 
 /** Beyond this distance in standard deviations a hypothesis doesn't fit: 1 in 1,000, two-sided. */
 export const SIGMAS_THAT_EXCLUDE = 3.3;
+/** Beyond this distance nothing saves a hypothesis, however well its shape agrees. */
+const SIGMAS_THAT_SETTLE = 4.5;
+/** Normal quantile for 1 in 200: how often a true declaration may be overruled. */
+const OVERRULE_QUANTILE = 2.58;
+/** Two laws whose scatters lie nearer than this many standard deviations can't be told apart. */
+const SEPARABLE_SIGMAS = 2.5;
 /** Levels nearer than this are one answer, whichever of two hypotheses is true. */
 const SAME_LEVEL_DB = 0.1;
 const FEWEST_INDEPENDENT_POINTS = 12;
 const GOODNESS_BINS = 12;
 
-/** Voltage averaging is rare next to power and log averaging (common practice): prior odds, natural log. */
+/** Voltage averaging that nobody declares is rare next to power and log averaging (common practice): prior odds, natural log. */
 const VOLTAGE_LOG_PRIOR = Math.log(0.1);
 
 interface Weighed extends Hypothesis {
@@ -70,7 +76,7 @@ export function averagingCheck(input: AveragingCheckInput): AveragingCheck {
   }));
   const bestLaw = decision.best?.law ?? stated?.law ?? weighed[0]?.law;
   const uncertainty = bestLaw
-    ? residuals.scatterDb * relativeScatterUncertainty(bestLaw, residuals.independentPoints)
+    ? residuals.scatterDb * relativeScatterUncertainty(bestLaw, residuals.scatterPoints)
     : null;
   const words = {
     ...input,
@@ -96,9 +102,9 @@ export function averagingCheck(input: AveragingCheckInput): AveragingCheck {
   };
 }
 
-function weigh({ residuals, densityFor }: AveragingCheckInput, candidates: Candidate[]): Weighed[] {
+function weigh({ residuals, densityFor, declared }: AveragingCheckInput, candidates: Candidate[]): Weighed[] {
   return candidates.map(({ law, ...candidate }) => {
-    const relative = relativeScatterUncertainty(law, residuals.independentPoints);
+    const relative = relativeScatterUncertainty(law, residuals.scatterPoints);
     const sigmas = (residuals.scatterDb / law.scatterDb - 1) / relative;
     return {
       ...candidate,
@@ -106,12 +112,32 @@ function weigh({ residuals, densityFor }: AveragingCheckInput, candidates: Candi
       predictedScatterDb: law.scatterDb,
       sigmas: Math.abs(sigmas),
       likelihood: 0,
-      logLikelihood: logLikelihood(residuals, law) + (candidate.id === 'voltage' ? VOLTAGE_LOG_PRIOR : 0),
+      logLikelihood:
+        logLikelihood(residuals, law) +
+        (candidate.id === 'voltage' && declared !== 'voltage' ? VOLTAGE_LOG_PRIOR : 0),
       fits: Math.abs(sigmas) <= SIGMAS_THAT_EXCLUDE,
       levelErrorDb: 0,
       densityDbmPerHz: densityFor(law.biasDb),
     };
   });
+}
+
+/** How many standard deviations of the observed scatter lie between what two laws predict. */
+function separation({ scatterPoints }: Residuals, a: Weighed, b: Weighed): number {
+  const relative = Math.max(
+    relativeScatterUncertainty(a.law, scatterPoints),
+    relativeScatterUncertainty(b.law, scatterPoints),
+  );
+  return Math.abs(Math.log(a.law.scatterDb / b.law.scatterDb)) / relative;
+}
+
+/**
+ * Log-likelihood that a rival must gain over the declaration to overrule it. Between two laws d standard deviations
+ * apart the gain under a true declaration is normal with mean -d²/2 and deviation d (Neyman and Pearson's test of two
+ * simple hypotheses), so -d²/2 + 2.58·d is passed once in 200; it never asks for less than an even choice.
+ */
+function overrulingGain(separationSigmas: number): number {
+  return Math.max(0, OVERRULE_QUANTILE * separationSigmas - separationSigmas ** 2 / 2);
 }
 
 interface Decision {
@@ -126,18 +152,27 @@ function decide(
   other: Weighed | null,
 ): Decision {
   const fitting = weighed.filter(({ fits }) => fits).sort((a, b) => b.logLikelihood - a.logLikelihood);
-  const [best] = fitting;
+  const [fittest] = fitting;
+  // The likelihood knows the whole shape: a candidate just outside 3.3 sigmas can still be far likelier than one inside.
+  const likeliest = weighed
+    .filter(({ sigmas }) => sigmas <= SIGMAS_THAT_SETTLE)
+    .sort((a, b) => b.logLikelihood - a.logLikelihood);
+  const best = fittest ? (likeliest.find(({ id }) => id !== declared) ?? fittest) : undefined;
   if (declared === null)
-    return { verdict: best || nothingAveraged ? 'undetermined' : 'none', best: best ?? null };
-  if (stated?.fits) {
-    const rival = fitting.find(
-      ({ id, law, logLikelihood }) =>
-        id !== stated.id &&
-        id !== 'voltage' &&
-        Math.abs(law.biasDb - stated.law.biasDb) > SAME_LEVEL_DB &&
-        logLikelihood > stated.logLikelihood - 3,
-    );
-    return { verdict: rival ? 'undetermined' : 'declared', best: stated };
+    return { verdict: fittest || nothingAveraged ? 'undetermined' : 'none', best: fittest ?? null };
+  if (stated && stated.sigmas <= SIGMAS_THAT_SETTLE) {
+    const rival = likeliest.find(({ id }) => id !== stated.id && (fittest || stated.fits));
+    if (!rival) {
+      if (stated.fits) return { verdict: 'declared', best: stated };
+    } else {
+      const apart = separation(residuals, stated, rival);
+      const gain = rival.logLikelihood - stated.logLikelihood;
+      if (gain > overrulingGain(apart)) return { verdict: 'other', best: rival };
+      const alike = apart < SEPARABLE_SIGMAS && gain > -3 && rival.id !== 'voltage';
+      const levelsDiffer = Math.abs(rival.law.biasDb - stated.law.biasDb) > SAME_LEVEL_DB;
+      if (stated.fits || gain < 0)
+        return { verdict: alike && levelsDiffer ? 'undetermined' : 'declared', best: stated };
+    }
   }
   if (best) return { verdict: 'other', best };
   if (other && shapeAgrees(residuals, other.law)) return { verdict: 'other', best: other };
@@ -145,17 +180,14 @@ function decide(
 }
 
 /** Log likelihood of the residuals about the level of a law: points with a mean power of 1 on the floor, per independent point. */
-function logLikelihood(
-  { counts, fromDb, binDb, points, independentPoints }: Residuals,
-  law: PointLaw,
-): number {
+function logLikelihood({ counts, fromDb, binDb, points, scatterPoints }: Residuals, law: PointLaw): number {
   let sum = 0;
   for (let bin = 0; bin < counts.length; bin += 1) {
     if (counts[bin] === 0) continue;
     const levelDb = fromDb + (bin + 0.5) * binDb + law.biasDb;
     sum += counts[bin] * Math.log(Math.max(law.densityPerDb(levelDb), 1e-6 / law.scatterDb));
   }
-  return (sum * Math.min(points, independentPoints)) / points;
+  return (sum * Math.min(points, scatterPoints)) / points;
 }
 
 /**
@@ -186,9 +218,9 @@ function logSumExp(values: number[]): number {
   return largest + Math.log(values.reduce((sum, value) => sum + Math.exp(value - largest), 0));
 }
 
-/** Bins for the screen: 40 over ±4 scatters, counts as shares of the points. */
+/** Bins for the screen, a fifth of a scatter wide; counts as shares of the points. */
 function shownHistogram({ counts, fromDb, binDb, points, scatterDb }: Residuals) {
-  const merged = 10;
+  const merged = 5;
   const edgesDb: number[] = [];
   const shares: number[] = [];
   for (let bin = 0; bin < counts.length; bin += merged) {

@@ -47,8 +47,7 @@ export function resolveChain(
     const isSingle =
       residuals === null ||
       residuals.scatterDb >
-        law.scatterDb *
-          (1 - SIGMAS_THAT_EXCLUDE * relativeScatterUncertainty(law, residuals.independentPoints));
+        law.scatterDb * (1 - SIGMAS_THAT_EXCLUDE * relativeScatterUncertainty(law, residuals.scatterPoints));
     const sweeps = isSingle ? 1 : sweepsSeen(chainOf(single, scale).stages, scale, residuals.scatterDb);
     const reason = isSingle ? 'the scatter is that of a single sweep' : 'the number that shows this scatter';
     resolved = { ...settings, sweeps };

@@ -21,7 +21,7 @@ export function peakValuesSeen(chain: Chain, residuals: Residuals): { chain: Cha
     Number(solveFalling(scatterOf, scatterDb, 1, MOST_VALUES).toPrecision(3));
   const stages = withValues(seen(residuals.scatterDb));
   const law = pointLaw(stages);
-  const relative = relativeScatterUncertainty(law, residuals.independentPoints);
+  const relative = relativeScatterUncertainty(law, residuals.scatterPoints);
   const higher = pointLaw(withValues(seen(residuals.scatterDb * (1 - relative))));
   const byDwell = pointLaw(chain.stages);
   const biasUncertaintyDb = Math.hypot(higher.biasDb - law.biasDb, (byDwell.biasDb - law.biasDb) / 2);

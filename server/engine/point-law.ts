@@ -56,6 +56,26 @@ function throughStage(grid: LogPowerGrid, { scale, values }: Stage): LogPowerGri
   }
 }
 
+/** Share of the points below (sign 1) or above (sign -1) each place of a grid, with the density there. */
+interface Tail {
+  share: Float64Array;
+  density: Float64Array;
+  sign: 1 | -1;
+}
+
+/** Share between two places: the cubic in its logarithm that meets value and slope at both; linear where a share is 0. */
+function shareAt({ share, density, sign }: Tail, step: number, place: number): number {
+  const low = Math.min(Math.floor(place), share.length - 2);
+  const t = place - low;
+  const a = share[low];
+  const b = share[low + 1];
+  if (!(a > 0 && b > 0)) return a + t * (b - a);
+  const slopeA = (sign * density[low] * step) / a;
+  const slopeB = (sign * density[low + 1] * step) / b;
+  const along = t * t * (3 - 2 * t) * Math.log(b / a);
+  return a * Math.exp(along + t * (1 - t) * ((1 - t) * slopeA - t * slopeB));
+}
+
 function lawOf(grid: LogPowerGrid): PointLaw {
   const meanPower = expectation(grid, Math.exp);
   const meanNeper = expectation(grid, (y) => y);
@@ -64,27 +84,20 @@ function lawOf(grid: LogPowerGrid): PointLaw {
   const { from, step, density } = grid;
   const last = density.length - 1;
 
+  const lower: Tail = { share: below, density, sign: 1 };
+  const upper: Tail = { share: above, density, sign: -1 };
+
   const quantileNeper = (p: number) => {
-    const fromBelow = p <= 0.5;
-    const [side, target] = fromBelow ? [below, p] : [above, 1 - p];
+    const [tail, target] = p <= 0.5 ? [lower, p] : [upper, 1 - p];
     let low = 0;
     let high = last;
-    while (high - low > 1) {
-      const middle = (low + high) >>> 1;
-      if (fromBelow ? side[middle] < target : side[middle] > target) low = middle;
+    while (high - low > 1e-9) {
+      const middle = high - low > 1 ? (low + high) >>> 1 : (low + high) / 2;
+      const seen = shareAt(tail, step, middle);
+      if (tail.sign === 1 ? seen < target : seen > target) low = middle;
       else high = middle;
     }
-    const a = side[low];
-    const b = side[high];
-    const share = a > 0 && b > 0 ? Math.log(target / a) / Math.log(b / a) : (target - a) / (b - a);
-    return from + (low + (Number.isFinite(share) ? share : 0.5)) * step;
-  };
-  const at = (values: Float64Array, y: number) => {
-    const place = (y - from) / step;
-    if (!(place >= 0)) return values[0];
-    if (place >= last) return values[last];
-    const low = Math.floor(place);
-    return values[low] + (place - low) * (values[low + 1] - values[low]);
+    return from + ((low + high) / 2) * step;
   };
   return {
     meanPower,
@@ -94,10 +107,16 @@ function lawOf(grid: LogPowerGrid): PointLaw {
     scatterDb: DB_PER_NEPER * Math.sqrt(variance),
     kurtosis: expectation(grid, (y) => (y - meanNeper) ** 4) / variance ** 2,
     quantilePower: (p) => Math.exp(quantileNeper(p)),
-    survivalPower: (power) => at(above, Math.log(power)),
+    survivalPower: (power) => {
+      const place = (Math.log(power) - from) / step;
+      if (!(place > 0)) return 1;
+      return place >= last ? 0 : shareAt(upper, step, place);
+    },
     densityPerDb: (levelDb) => {
-      const y = levelDb / DB_PER_NEPER;
-      return y < from || y > from + last * step ? 0 : at(density, y) / DB_PER_NEPER;
+      const place = (levelDb / DB_PER_NEPER - from) / step;
+      if (!(place >= 0 && place < last)) return 0;
+      const low = Math.floor(place);
+      return (density[low] + (place - low) * (density[low + 1] - density[low])) / DB_PER_NEPER;
     },
   };
 }

@@ -8,8 +8,10 @@ const HISTOGRAM_REACH_SCATTERS = 12;
 export interface Residuals {
   /** Number of kept points. */
   points: number;
-  /** Points that count as independent. */
+  /** Points that count as independent for the mean. */
   independentPoints: number;
+  /** Points that count as independent for the scatter (`pointsForScatter`). */
+  scatterPoints: number;
   /** Standard deviation, the rounding of the file taken out; dB. */
   scatterDb: number;
   /** Fine histogram: counts in equal bins from `fromDb`. */
@@ -56,7 +58,25 @@ export function residualsOf(
     const bin = Math.floor((levels[i] - fromDb) / binDb);
     counts[Math.max(0, Math.min(HISTOGRAM_BINS - 1, bin))] += 1;
   }
-  return { points, independentPoints, scatterDb, fromDb, binDb, counts };
+  const scatterPoints = pointsForScatter(points, independentPoints);
+  return { points, independentPoints, scatterPoints, scatterDb, fromDb, binDb, counts };
+}
+
+/**
+ * Points that count as independent for a sample variance: squares of correlated values correlate as c², so that
+ * τ₂ = 1 + 2·Σ c²(k) takes the place of τ = 1 + 2·Σ c(k). With c a Gaussian of the lag, exp(-s·k²), as behind a
+ * resolution filter: s from τ, then τ₂; τ/√2 for long correlation.
+ */
+export function pointsForScatter(points: number, independentPoints: number): number {
+  const tau = points / Math.max(1, independentPoints);
+  if (tau <= 1) return points;
+  if (tau > 3) return (points * Math.SQRT2) / tau;
+  const tauAt = (s: number) => {
+    let sum = 1;
+    for (let lag = 1; s * lag * lag < 30; lag += 1) sum += 2 * Math.exp(-s * lag * lag);
+    return sum;
+  };
+  return points / tauAt(2 * solveFalling(tauAt, tau, 0.1, 30));
 }
 
 /**
