@@ -16,6 +16,7 @@ import {
   gainEntry,
   levelEntry,
   meanEntry,
+  openBiasEntry,
   ownNoiseEntry,
 } from './ledger-entries.ts';
 import { noiseBandwidthRatio, threeDbWidthHz } from './noise-bandwidth.ts';
@@ -205,12 +206,14 @@ function walk(given: WalkInput): Omit<EngineEstimate, 'engineVersion' | 'input'>
       effectivePoints: survey.independent.effectivePoints,
       unit,
     }),
-    biasEntry(effective, {
-      correctionDb: main.biasCorrectionDb,
-      stages: resolved.chain.stages,
-      sweeps: resolved.settings.sweeps ?? null,
-      check: check.sentence,
-    }),
+    scaleMatters
+      ? openBiasEntry()
+      : biasEntry(effective, {
+          correctionDb: main.biasCorrectionDb,
+          stages: resolved.chain.stages,
+          sweeps: resolved.settings.sweeps ?? null,
+          check: check.sentence,
+        }),
     ...(unit === 'dBm' && bandwidth ? [bandwidthEntry(effective, bandwidth)] : []),
     ...(main.ownNoise ? [ownNoiseEntry(effective, main.ownNoise)] : []),
     levelEntry(effective),

@@ -121,6 +121,21 @@ export function biasEntry(
   };
 }
 
+/** The line that stays open while the averaging scale isn't stated. */
+export function openBiasEntry(): LedgerEntry {
+  return {
+    id: 'bias',
+    label: 'Averaging bias',
+    caption: 'open until the averaging scale is stated',
+    valueDb: 0,
+    kind: 'correction',
+    budgetIds: ['averaging'],
+    formula: 'depends on the scale on which the values were averaged',
+    inputs: [],
+    source: 'Method: averaging bias, exact for finite N',
+  };
+}
+
 /** The step from the filter's noise bandwidth to 1 Hz. */
 export function bandwidthEntry(
   effective: EffectiveSettings,
