@@ -165,6 +165,56 @@ describe('a capture', () => {
     expect(query().has('span')).toBe(false);
   });
 
+  it('leaves a marked span out by keyboard, saying first what that would change, and undoes it', async () => {
+    await open(SAMPLE);
+    const used = section('Trace').getByText(/points used$/);
+    await section('Ledger').getByTestId('density').waitFor();
+    await section('Trace').locator('canvas').waitFor();
+    const before = await used.textContent();
+    await page.keyboard.press('b');
+    const marked = page.getByRole('group', { name: 'Marked span' });
+    await marked.getByText(/^Without them/).waitFor();
+    const lower = page.getByRole('slider', { name: 'Lower end of the marked span' });
+    const start = Number(await lower.getAttribute('aria-valuenow'));
+    await lower.press('Shift+ArrowLeft');
+    expect(Number(await lower.getAttribute('aria-valuenow'))).toBeLessThan(start);
+    await page.keyboard.press('e');
+    await page.getByText('Unsaved change', { exact: true }).waitFor();
+    await marked.waitFor({ state: 'detached' });
+    expect(query().getAll('span').at(-1)).toMatch(/^out /);
+    await expect.poll(() => used.textContent(), { timeout: 10_000 }).not.toBe(before);
+    await page.keyboard.press('u');
+    await page.getByText('Working, estimate 2', { exact: true }).waitFor();
+    expect(query().has('span')).toBe(false);
+    await expect.poll(() => used.textContent()).toBe(before);
+  });
+
+  it('leaves a span out by dragging over the trace', async () => {
+    const box = await section('Trace').locator('.u-over').boundingBox();
+    if (box === null) throw new Error('The plot isn’t on the page.');
+    const y = box.y + box.height / 2;
+    await page.mouse.move(box.x + box.width * 0.08, y);
+    await page.mouse.down();
+    await page.mouse.move(box.x + box.width * 0.12, y, { steps: 4 });
+    await page.mouse.up();
+    await page.getByRole('group', { name: 'Marked span' }).getByRole('button', { name: 'Exclude' }).click();
+    await page.getByText('Unsaved change', { exact: true }).waitFor();
+    expect(query().getAll('span')).toHaveLength(1);
+    await page.keyboard.press('u');
+    await page.getByText('Working, estimate 2', { exact: true }).waitFor();
+  });
+
+  it('keeps the zoom in the address over a reload', async () => {
+    await page.keyboard.press('+');
+    await expect.poll(() => query().has('from')).toBe(true);
+    const address = page.url();
+    await page.reload();
+    await section('Trace').getByRole('button', { name: 'Whole span' }).waitFor();
+    expect(page.url()).toBe(address);
+    await page.keyboard.press('0');
+    await expect.poll(() => query().has('from')).toBe(false);
+  });
+
   it('renames in place', async () => {
     await page.getByRole('button', { name: /^Rename/ }).click();
     await page.getByRole('textbox', { name: 'Name of the capture' }).fill('Strip 14 on the bench');

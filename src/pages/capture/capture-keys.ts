@@ -7,6 +7,7 @@ export const CAPTURE_KEYS: readonly KeyRow[] = [
   { keys: ['1', '–', '7'], words: 'go to a section' },
   { keys: ['u'], words: 'undo' },
   { keys: ['Shift u'], words: 'redo' },
+  { keys: ['b'], words: 'mark a span on the trace' },
   { keys: ['e'], words: 'leave the marked span out' },
   { keys: ['[', ']'], words: 'previous, next spur' },
   { keys: ['+', '−', '0'], words: 'zoom in, out, whole span' },
