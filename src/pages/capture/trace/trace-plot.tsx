@@ -46,7 +46,7 @@ export default function TracePlot(props: TracePlotProps) {
     const u = plot.current;
     if (!u) return;
     const ends = [u.posToVal(fromX, 'x'), u.posToVal(toX, 'x')].map((hz) =>
-      Math.min(span.toHz, Math.max(span.fromHz, hz)),
+      Math.min(span.toHz, Math.max(span.fromHz, spacingHz >= 1 ? Math.round(hz) : hz)),
     );
     const marked = { fromHz: Math.min(...ends), toHz: Math.max(...ends) };
     const far = Math.abs(toX - fromX) >= LEAST_DRAG_PX;
@@ -116,6 +116,15 @@ export default function TracePlot(props: TracePlotProps) {
         { stroke: () => token('trace-x'), width: 0.85, points: { show: false }, spanGaps: false },
       ],
       hooks: {
+        ready: [
+          ({ over }) =>
+            setBox({
+              left: over.offsetLeft,
+              top: over.offsetTop,
+              width: over.offsetWidth,
+              height: over.offsetHeight,
+            }),
+        ],
         drawClear: [(u) => drawGround(u, scene.current)],
         draw: [(u) => drawMarks(u, scene.current)],
         setCursor: [
@@ -136,12 +145,6 @@ export default function TracePlot(props: TracePlotProps) {
     const { over } = made;
     over.style.touchAction = 'pan-y';
     over.style.cursor = 'crosshair';
-    setBox({
-      left: over.offsetLeft,
-      top: over.offsetTop,
-      width: over.offsetWidth,
-      height: over.offsetHeight,
-    });
     let drag: { fromX: number; zooming: boolean; id: number } | null = null;
     const at = (event: PointerEvent) => event.clientX - over.getBoundingClientRect().left;
     const down = (event: PointerEvent) => {
