@@ -137,10 +137,7 @@ function Row({ row, onHighlight }: { row: LedgerRow; onHighlight(highlight: High
       onFocus={() => onHighlight(line.id)}
       onBlur={() => onHighlight(null)}
     >
-      <summary
-        className={clsx(GRID, 'cursor-pointer list-none py-1.5')}
-        aria-label={`${letter}, ${line.label}, ${line.caption}: ${value}, running ${fixed(runningDb, 2)}${percent === null ? '' : `, ${percent} percent of the uncertainty`}`}
-      >
+      <summary className={clsx(GRID, 'cursor-pointer list-none py-1.5')}>
         <span className="font-mono text-caption text-ink3">{letter}</span>
         <span>
           <span className="block text-body">
@@ -160,7 +157,10 @@ function Row({ row, onHighlight }: { row: LedgerRow; onHighlight(highlight: High
         <span className="text-right font-mono text-body" data-value>
           {value}
         </span>
-        <span className="text-right font-mono text-table text-ink3">{fixed(runningDb, 2)}</span>
+        <span className="text-right font-mono text-table text-ink3">
+          <span className="sr-only">running </span>
+          {fixed(runningDb, 2)}
+        </span>
         <span className="flex items-baseline justify-end gap-1.5 font-mono text-caption text-ink3 max-phone:hidden">
           {percent !== null && (
             <>
@@ -168,7 +168,10 @@ function Row({ row, onHighlight }: { row: LedgerRow; onHighlight(highlight: High
                 className="inline-block h-1.5 bg-est opacity-75"
                 style={{ width: Math.max(1, Math.min(44, percent * PX_PER_PERCENT)) }}
               />
-              <span className="w-6 text-right">{percent}</span>
+              <span className="w-6 text-right">
+                {percent}
+                <span className="sr-only"> percent of the uncertainty</span>
+              </span>
             </>
           )}
         </span>
