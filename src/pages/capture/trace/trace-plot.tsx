@@ -197,7 +197,7 @@ export default function TracePlot(props: TracePlotProps) {
           {props.overlay({ ...box, x: (hz) => ((hz - span.fromHz) / (span.toHz - span.fromHz)) * box.width })}
         </div>
       )}
-      <span className="absolute right-0 bottom-0 text-caption text-ink3">
+      <span className={`absolute right-0 text-caption text-ink3 ${compact ? '-bottom-4' : 'bottom-0'}`}>
         {frequencyScale(span.toHz).unit}
       </span>
     </div>
