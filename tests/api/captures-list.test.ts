@@ -137,8 +137,8 @@ describe('filters', () => {
     expect((await all({ campaignId })).length).toBe(Math.ceil(MANY / 7));
     const personId = states[0].uploadedBy.id;
     expect((await all({ personId })).every(({ uploadedBy }) => uploadedBy.id === personId)).toBe(true);
-    const [newest] = await all({ sort: 'newest' });
-    const since = new Date(Date.parse(newest.uploadedAt) - 100.5 * 60_000).toISOString();
+    const uploadTimes = (await all({})).map(({ uploadedAt }) => Date.parse(uploadedAt));
+    const since = new Date(Math.max(...uploadTimes) - 100.5 * 60_000).toISOString();
     expect(await all({ since })).toHaveLength(101);
   });
 
