@@ -21,20 +21,17 @@ function trueTau(spacingPerWidth: number): number {
 }
 
 describe('points per independent point', () => {
-  it.each([0.05, 0.2, 0.5, 1])(
-    'are close to the truth for points %d filter widths apart',
-    (spacing) => {
-      const length = 60001;
-      const powerMw = simulateCapture(
-        { length, spacingPerWidth: spacing, sweeps: 1, scale: 'power' },
-        uniformStream(3),
-      );
-      const { tau, effectivePoints, source } = tauOf(powerMw);
-      expect(source).toBe('data');
-      expect(Math.abs(tau / trueTau(spacing) - 1)).toBeLessThan(0.1);
-      expect(effectivePoints).toBeCloseTo(length / tau, 6);
-    },
-  );
+  it.each([0.05, 0.2, 0.5, 1])('are close to the truth for points %d filter widths apart', (spacing) => {
+    const length = 60001;
+    const powerMw = simulateCapture(
+      { length, spacingPerWidth: spacing, sweeps: 1, scale: 'power' },
+      uniformStream(3),
+    );
+    const { tau, effectivePoints, source } = tauOf(powerMw);
+    expect(source).toBe('data');
+    expect(Math.abs(tau / trueTau(spacing) - 1)).toBeLessThan(0.1);
+    expect(effectivePoints).toBeCloseTo(length / tau, 6);
+  });
 
   it('are unbiased within 10 % over short captures', () => {
     let sum = 0;
