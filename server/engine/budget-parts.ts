@@ -1,5 +1,5 @@
 import { boundedPart, statedPart, type BudgetPart } from './budget.ts';
-import type { DensityWalk } from './density-walk.ts';
+import { type DensityWalk, skirtUncertaintyDb } from './density-walk.ts';
 import type { EffectiveSettings } from './effective-settings.ts';
 import type { Survey } from './survey.ts';
 import { DB_PER_NEPER } from './units.ts';
@@ -53,6 +53,14 @@ export function budgetParts(
           source: 'effective number of a video filter, against simulation',
         },
         sensitivity * biasUncertaintyDb,
+      ),
+    );
+  }
+  if (walk.skirtCorrectionDb !== 0) {
+    parts.push(
+      statedPart(
+        { id: 'skirts', label: 'Skirts of the spurs', source: 'half of the correction, rectangular' },
+        sensitivity * skirtUncertaintyDb(walk.skirtCorrectionDb),
       ),
     );
   }

@@ -8,6 +8,8 @@ import { dbToPower, powerToDb, thermalDensityDbmPerHz } from './units.ts';
 export interface DensityWalk {
   meanLevelDbm: number;
   biasCorrectionDb: number;
+  /** What the skirts of spurs add to the mean, taken off; 0: nothing worth a line. */
+  skirtCorrectionDb: number;
   /** Reading over the analyser's own noise, both per hertz; null: own noise not stated. */
   ownNoiseMarginDb: number | null;
   ownNoise: { correctionDb: number; marginDb: number } | null;
@@ -35,6 +37,10 @@ export interface DensityWalkInput {
 const FEWEST_POINTS_FOR_VARIANCE = 20;
 const TWO_SIDED_95 = 1.959964;
 
+/** Standard uncertainty of the correction for skirts: half of it as a rectangular half width, for the filter's tolerance. */
+export const skirtUncertaintyDb = (skirtCorrectionDb: number) =>
+  Math.abs(skirtCorrectionDb) / 2 / Math.sqrt(3);
+
 /**
  * Density = mean - bias - 10·log10(Bn) - external gain, the own noise subtracted in linear power between (method,
  * sections 4 to 7). The limits of the statistical interval take the same way; where the bias is known to some hundredths
@@ -57,7 +63,9 @@ export function densityWalk({
   );
   const meanLevelDbm = powerToDb(survey.meanPowerMw);
   const biasCorrectionDb = Math.abs(law.biasDb) < 1e-9 ? 0 : -law.biasDb;
-  const atInputDbmPerHz = meanLevelDbm + biasCorrectionDb - powerToDb(noiseBandwidthHz);
+  const skirtCorrectionDb =
+    survey.skirtShare === 0 ? 0 : powerToDb(1 - Math.min(0.999, survey.skirtShare * law.meanPower));
+  const atInputDbmPerHz = meanLevelDbm + skirtCorrectionDb + biasCorrectionDb - powerToDb(noiseBandwidthHz);
   const ownDbmPerHz = values.ownNoiseDbmPerHz;
   const marginDb = ownDbmPerHz === undefined ? null : atInputDbmPerHz - ownDbmPerHz;
   const subtract = (dbmPerHz: number) =>
@@ -67,13 +75,14 @@ export function densityWalk({
   const gainDb = values.externalGainDb ?? 0;
   const atDevice = (dbmPerHz: number) => subtract(dbmPerHz) - gainDb;
   const dbmPerHz = atDevice(atInputDbmPerHz);
-  const model = TWO_SIDED_95 * biasUncertaintyDb;
+  const model = TWO_SIDED_95 * Math.hypot(biasUncertaintyDb, skirtUncertaintyDb(skirtCorrectionDb));
   const lowDbmPerHz = atDevice(atInputDbmPerHz - Math.hypot(interval.lowFactorDb, model));
   const highDbmPerHz = atDevice(atInputDbmPerHz + Math.hypot(interval.highFactorDb, model));
   const sensitivity = marginDb === null ? 1 : 1 / Math.max(1e-6, 1 - dbToPower(-marginDb));
   return {
     meanLevelDbm,
     biasCorrectionDb,
+    skirtCorrectionDb,
     ownNoiseMarginDb: marginDb,
     ownNoise:
       marginDb === null ? null : { correctionDb: subtract(atInputDbmPerHz) - atInputDbmPerHz, marginDb },

@@ -18,12 +18,13 @@ import {
   meanEntry,
   openBiasEntry,
   ownNoiseEntry,
+  skirtEntry,
 } from './ledger-entries.ts';
 import { noiseBandwidthRatio, threeDbWidthHz } from './noise-bandwidth.ts';
 import { pointLaw, type PointLaw } from './point-law.ts';
 import { quantizationStepDb } from './scatter.ts';
 import { surveyTrace, type Survey } from './survey.ts';
-import { dbToPowers } from './units.ts';
+import { dbToPower, dbToPowers } from './units.ts';
 import { ENGINE_VERSION } from './version.ts';
 
 /** One trace: levels in dB at ascending frequencies. */
@@ -206,6 +207,7 @@ function walk(given: WalkInput): Omit<EngineEstimate, 'engineVersion' | 'input'>
       effectivePoints: survey.independent.effectivePoints,
       unit,
     }),
+    ...(main.skirtCorrectionDb === 0 ? [] : [skirtEntry(effective, main.skirtCorrectionDb)]),
     scaleMatters
       ? openBiasEntry()
       : biasEntry(effective, {
@@ -272,6 +274,7 @@ function walk(given: WalkInput): Omit<EngineEstimate, 'engineVersion' | 'input'>
       budget,
       spurs: survey.spurs,
       spurPowerShare: survey.spurPowerShare,
+      skirtShare: 1 - dbToPower(main.skirtCorrectionDb),
       floor: survey.floor,
       quantizationStepDb: given.step,
       bottomShare: bottomShare(given.levelDb),
@@ -410,6 +413,7 @@ function nothingLeft(
       budget,
       spurs: [],
       spurPowerShare: 0,
+      skirtShare: 0,
       floor,
       quantizationStepDb: null,
       bottomShare: 0,

@@ -20,6 +20,8 @@ export interface FindingContext {
   spurs: Spur[];
   /** Power of the spurs over all power in the trace, 0 to 1. */
   spurPowerShare: number;
+  /** Share of the mean that the skirts of spurs still carry, 0 to 1. */
+  skirtShare: number;
   floor: Floor;
   quantizationStepDb: number | null;
   /** Points that share the lowest level, 0 to 1. */
@@ -309,6 +311,17 @@ const rules: Rule[] = [
           'Look for a trace that was already per hertz, a gain counted twice, or a wrong RBW.',
         )
       : null,
+
+  ({ skirtShare }) =>
+    skirtShare < 0.02
+      ? null
+      : finding(
+          'skirts-reach-floor',
+          skirtShare > 0.2 ? 'stop' : 'caution',
+          'The skirts of strong spurs reach over the floor.',
+          `They carry ${significant(100 * skirtShare, 2)} % of the mean that is left; the filter falls slowly, so no span is free of them.`,
+          'Use a narrower RBW or a steeper filter, or capture beside the spurs.',
+        ),
 
   ({ spurs, spurPowerShare }) => {
     const out = spurs.filter(({ leftOut }) => leftOut).length;

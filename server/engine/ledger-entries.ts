@@ -90,6 +90,25 @@ function biasFormula(stages: Stage[], correctionDb: number): string {
   }
 }
 
+/** What the skirts of the spurs that are left out still add to the mean, taken off. */
+export function skirtEntry(effective: EffectiveSettings, skirtCorrectionDb: number): LedgerEntry {
+  const share = 1 - 10 ** (skirtCorrectionDb / 10);
+  return {
+    id: 'skirts',
+    label: 'Skirts of the spurs',
+    caption: `${significant(100 * share, 2)} % of the mean, taken off`,
+    valueDb: skirtCorrectionDb,
+    kind: 'correction',
+    budgetIds: ['skirts'],
+    formula: `10 lg(1 − s) = ${fixed(skirtCorrectionDb, 2, 'always')} dB`,
+    inputs: [
+      { name: 's', value: significant(share, 3), origin: 'the filter’s response at the kept points' },
+      settingInput(effective, 'filterShape', 'shape', effective.values.filterShape ?? 'gaussian'),
+    ],
+    source: 'Method: spurs, guarded by the filter’s shape',
+  };
+}
+
 /** The correction for what averaging does to the linear mean. */
 export function biasEntry(
   effective: EffectiveSettings,

@@ -8,6 +8,7 @@ import type { PointLaw } from './point-law.ts';
 import { findRipple } from './ripple.ts';
 import { residualsOf, type Residuals } from './scatter.ts';
 import { findSpurs } from './spurs.ts';
+import { skirtShare } from './spur-skirts.ts';
 import { meanOfKept, powerToDb } from './units.ts';
 import { workingLaw } from './working-law.ts';
 
@@ -45,6 +46,8 @@ export interface Survey {
   relativeVariance: number;
   independent: IndependentPoints;
   residuals: Residuals;
+  /** Share of the mean that the skirts of spurs left out still carry, 0 to 1. */
+  skirtShare: number;
   /** How much leaving out chance exceedances lowers the mean, dB (negative, tiny). */
   truncationBiasDb: number;
 }
@@ -156,6 +159,13 @@ export function surveyTrace(input: SurveyInput): Survey | null {
       independent.effectivePoints,
       shape.parameters,
       input.quantizationStepDb,
+    ),
+    skirtShare: skirtShare(
+      frequencyHz,
+      leftOut,
+      search.spurs.filter((_, index) => spanLeftOut[index]),
+      (offsetHz) => filterResponseDb(input.filterShape, filterWidthHz, offsetHz),
+      meanPowerMw,
     ),
     truncationBiasDb: search.truncationBiasDb,
   };

@@ -9,6 +9,7 @@ const ANCHORS: Record<string, string> = {
   ownNoise: 'own-noise',
   level: 'level',
   gain: 'external-gain',
+  skirts: 'spurs',
 };
 
 /** What stands behind a line of the ledger: formula, inputs with their origin, check, uncertainty, source. */
